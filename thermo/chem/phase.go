@@ -1,0 +1,34 @@
+package chem
+
+// Phase is a mineral symbol after Warr LN (2021) IMA-CNMNC approved mineral
+// symbols, Mineral Mag 85:291-320.
+type Phase string
+
+// The roles a phase plays in a pair.
+const (
+	Afs Phase = "Afs" // alkali feldspar
+	Pl  Phase = "Pl"  // plagioclase
+	Opx Phase = "Opx" // orthopyroxene
+	Cpx Phase = "Cpx" // clinopyroxene
+)
+
+// phases lists every symbol that is accepted, with the role the phase plays in
+// a pair ("" for none yet). Pigeonite is no Cpx here: the two-pyroxene solvus
+// methods are calibrated on augite and diopside.
+var phases = map[Phase]Phase{
+	Afs: Afs, "Kfs": Afs, "Or": Afs, "Sa": Afs, "Mc": Afs, "Ano": Afs,
+	Pl: Pl, "Ab": Pl, "Olg": Pl, "Ads": Pl, "Lab": Pl, "Byt": Pl, "An": Pl,
+	Opx: Opx, "En": Opx, "Fs": Opx,
+	Cpx: Cpx, "Di": Cpx, "Aug": Cpx, "Hd": Cpx, "Pgt": "", "Omp": "", "Aeg": "", "Jd": "",
+	"Fsp": "", "Px": "", "Grt": "", "Prp": "", "Alm": "", "Adr": "", "Bt": "", "Phl": "", "Ms": "", "Wm": "",
+	"Amp": "", "Hbl": "", "Cum": "", "Ath": "", "Ol": "", "Fo": "", "Fa": "", "Spl": "", "Chr": "",
+	"Ilm": "", "Mag": "", "Hem": "", "Rt": "", "Ttn": "", "Zrn": "", "Ap": "", "Qz": "",
+	"Cal": "", "Dol": "", "Ank": "", "Mgs": "", "Sid": "", "Crd": "", "Sil": "", "Ky": "", "And": "",
+	"St": "", "Ep": "", "Chl": "", "Scp": "", "Nph": "", "Lct": "", "Crn": "", "Spr": "",
+}
+
+// Known says whether p is a symbol tieline accepts.
+func (p Phase) Known() bool { _, ok := phases[p]; return ok }
+
+// Role is the part p plays in a pair, Afs for sanidine, Cpx for diopside; "" for none.
+func (p Phase) Role() Phase { return phases[p] }
