@@ -1,0 +1,240 @@
+package tables
+
+import (
+	"github.com/apache/arrow/go/v17/arrow"
+	"github.com/apache/arrow/go/v17/arrow/array"
+	"github.com/apache/arrow/go/v17/arrow/bitutil"
+	"github.com/apache/arrow/go/v17/arrow/memory"
+
+	"tieline/thermo/chem"
+)
+
+// flush turns the staged rows into a batch. Buffers are made at their final
+// size and handed to Arrow: its builders round each up to a power of two and
+// pad it, a quarter more over a million analyses.
+func (b *Builder) flush() {
+	if len(b.rows) == 0 {
+		return
+	}
+	f := flusher{rows: b.rows}
+	out := &Batch{Source: b.source, Kind: b.kind}
+	for t := range out.text {
+		out.text[t] = f.text(Text(t).String(), func(r *staged) string { return r.text[t] })
+	}
+	out.phase = f.text("phase", func(r *staged) string { return string(r.phase) })
+	out.line = f.int32s("line", func(r *staged) int32 { return r.line }, true)
+	out.column = f.int32s("column", func(r *staged) int32 { return r.column }, false)
+	for n := range out.number {
+		out.number[n] = f.floats(Number(n).String(), func(r *staged) (float64, bool) { return r.number[n], r.has[n] })
+	}
+	for m := range chem.NumMeasurands {
+		c := measuredColumn{of: m}
+		c.value = f.floats(m.String(), func(r *staged) (float64, bool) {
+			return r.value[m], r.state[m] == chem.Measured || r.value[m] != 0
+		})
+		c.state = f.states(m.String()+" state", m)
+		if c.value != nil || c.state != nil {
+			out.measured = append(out.measured, c)
+		}
+		out.sigma[m] = f.floats(m.String()+" sigma", func(r *staged) (float64, bool) { return r.sigma[m], r.sigma[m] != 0 })
+	}
+	if b.kind == chem.EndMember {
+		out.endMemberSum = f.floats("end_member_sum", func(r *staged) (float64, bool) { return r.endMemberSum, true })
+	}
+	out.lineage = f.lineages()
+	out.record = array.NewRecord(arrow.NewSchema(f.fields, nil), f.arrays, int64(len(b.rows)))
+	b.done = append(b.done, out)
+	clear(b.rows) // let go of the cells' texts
+	b.rows, b.text = b.rows[:0], 0
+}
+
+// flusher makes Arrow columns of staged rows and notes them for the record.
+type flusher struct {
+	rows   []staged
+	fields []arrow.Field
+	arrays []arrow.Array
+}
+
+func (f *flusher) add(name string, a arrow.Array, nullable bool) {
+	f.fields = append(f.fields, arrow.Field{Name: name, Type: a.DataType(), Nullable: nullable})
+	f.arrays = append(f.arrays, a)
+}
+
+// bitmap has a bit set for every row that is valid; nil where all are.
+func (f *flusher) bitmap(valid func(*staged) bool) (bits *memory.Buffer, nulls int) {
+	set := make([]byte, bitutil.BytesForBits(int64(len(f.rows))))
+	for i := range f.rows {
+		if valid(&f.rows[i]) {
+			bitutil.SetBit(set, i)
+		} else {
+			nulls++
+		}
+	}
+	if nulls == 0 {
+		return nil, 0
+	}
+	return memory.NewBufferBytes(set), nulls
+}
+
+func (f *flusher) data(t arrow.DataType, nulls int, buffers ...*memory.Buffer) *array.Data {
+	return array.NewData(t, len(f.rows), buffers, nil, nulls, 0)
+}
+
+// floats is nil where no row has a value. -0 becomes 0.
+func (f *flusher) floats(name string, get func(*staged) (float64, bool)) *array.Float64 {
+	bits, nulls := f.bitmap(func(r *staged) bool { _, ok := get(r); return ok })
+	if nulls == len(f.rows) {
+		return nil
+	}
+	values := make([]float64, len(f.rows))
+	for i := range f.rows {
+		if x, ok := get(&f.rows[i]); ok && x != 0 {
+			values[i] = x
+		}
+	}
+	a := array.NewFloat64Data(f.data(arrow.PrimitiveTypes.Float64, nulls, bits,
+		memory.NewBufferBytes(arrow.Float64Traits.CastToBytes(values))))
+	f.add(name, a, nulls > 0)
+	return a
+}
+
+// int32s is nil where every row has 0, unless always.
+func (f *flusher) int32s(name string, get func(*staged) int32, always bool) *array.Int32 {
+	values := make([]int32, len(f.rows))
+	any := always
+	for i := range f.rows {
+		values[i] = get(&f.rows[i])
+		any = any || values[i] != 0
+	}
+	if !any {
+		return nil
+	}
+	a := array.NewInt32Data(f.data(arrow.PrimitiveTypes.Int32, 0, nil,
+		memory.NewBufferBytes(arrow.Int32Traits.CastToBytes(values))))
+	f.add(name, a, false)
+	return a
+}
+
+// states is nil where every cell is measured or missing, which the value's
+// validity says.
+func (f *flusher) states(name string, m chem.Measurand) *array.Uint8 {
+	said := true
+	for i := range f.rows {
+		s := f.rows[i].state[m]
+		said = said && (s == chem.Measured || s == chem.Missing)
+	}
+	if said {
+		return nil
+	}
+	values := make([]uint8, len(f.rows))
+	for i := range f.rows {
+		values[i] = uint8(f.rows[i].state[m])
+	}
+	a := array.NewUint8Data(f.data(arrow.PrimitiveTypes.Uint8, 0, nil, memory.NewBufferBytes(values)))
+	f.add(name, a, false)
+	return a
+}
+
+func (f *flusher) lineages() *array.FixedSizeBinary {
+	t := &arrow.FixedSizeBinaryType{ByteWidth: len(staged{}.lineage)}
+	values := make([]byte, 0, len(f.rows)*t.ByteWidth)
+	for i := range f.rows {
+		values = append(values, f.rows[i].lineage[:]...)
+	}
+	a := array.NewFixedSizeBinaryData(f.data(t, 0, nil, memory.NewBufferBytes(values)))
+	f.add("lineage", a, false)
+	return a
+}
+
+// textColumn is one text: nothing, strings, or codes into a few strings.
+type textColumn struct {
+	words *array.String
+	codes []uint8      // nil: words hold the rows
+	nulls *array.Uint8 // the codes as Arrow has them, nulls included
+}
+
+func (c *textColumn) at(i int) string {
+	switch {
+	case c.words == nil:
+		return ""
+	case c.codes == nil:
+		return c.words.Value(i) // "" where null
+	case c.nulls.IsNull(i):
+		return ""
+	}
+	return c.words.Value(int(c.codes[i]))
+}
+
+// maxWords is how many different texts a column may have and be stored as one
+// byte a row.
+const maxWords = 256
+
+// text stores a column as codes where its texts repeat at least once on
+// average; nothing where all are "".
+func (f *flusher) text(name string, get func(*staged) string) textColumn {
+	bits, nulls := f.bitmap(func(r *staged) bool { return get(r) != "" })
+	if nulls == len(f.rows) {
+		return textColumn{}
+	}
+	words, codes := f.words(get)
+	if codes == nil || 2*len(words) > len(f.rows)-nulls {
+		all := make([]string, len(f.rows))
+		for i := range f.rows {
+			all[i] = get(&f.rows[i])
+		}
+		a := array.NewStringData(f.data(arrow.BinaryTypes.String, nulls, bits, offsets(all), contents(all)))
+		f.add(name, a, nulls > 0)
+		return textColumn{words: a}
+	}
+	dict := array.NewStringData(array.NewData(arrow.BinaryTypes.String, len(words),
+		[]*memory.Buffer{nil, offsets(words), contents(words)}, nil, 0, 0))
+	index := array.NewUint8Data(f.data(arrow.PrimitiveTypes.Uint8, nulls, bits, memory.NewBufferBytes(codes)))
+	t := &arrow.DictionaryType{IndexType: arrow.PrimitiveTypes.Uint8, ValueType: arrow.BinaryTypes.String}
+	f.add(name, array.NewDictionaryArray(t, index, dict), nulls > 0)
+	return textColumn{words: dict, codes: codes, nulls: index}
+}
+
+// words gives the different texts in order of first use, and each row's; codes
+// is nil where there are more than maxWords.
+func (f *flusher) words(get func(*staged) string) (words []string, codes []uint8) {
+	seen := map[string]uint8{}
+	codes = make([]uint8, len(f.rows))
+	for i := range f.rows {
+		s := get(&f.rows[i])
+		if s == "" {
+			continue
+		}
+		code, ok := seen[s]
+		if !ok {
+			if len(words) == maxWords {
+				return nil, nil
+			}
+			code = uint8(len(words))
+			seen[s] = code
+			words = append(words, s)
+		}
+		codes[i] = code
+	}
+	return words, codes
+}
+
+// offsets and contents are the two buffers of an Arrow string column.
+func offsets(texts []string) *memory.Buffer {
+	at := make([]int32, len(texts)+1)
+	for i, s := range texts {
+		at[i+1] = at[i] + int32(len(s))
+	}
+	return memory.NewBufferBytes(arrow.Int32Traits.CastToBytes(at))
+}
+
+func contents(texts []string) *memory.Buffer {
+	n := 0
+	for _, s := range texts {
+		n += len(s)
+	}
+	all := make([]byte, 0, n)
+	for _, s := range texts {
+		all = append(all, s...)
+	}
+	return memory.NewBufferBytes(all)
+}
