@@ -97,27 +97,13 @@ type Builder struct {
 	source string
 	kind   chem.Kind
 	done   []*Batch
-	rows   []staged
+	rows   []Analysis
 	text   int // bytes of text staged
 }
 
 // maxText is how many bytes of text close a batch early: Arrow counts them in
 // 32 bits, and a source may hold long cells.
 const maxText = 64 << 20
-
-// staged is an Analysis without its composition's empty places, which would
-// make a block of staged rows three times as large.
-type staged struct {
-	line, column int32
-	phase        chem.Phase
-	text         [NumTexts]string
-	number       [NumNumbers]float64
-	has          [NumNumbers]bool
-	value, sigma [chem.NumMeasurands]float64
-	state        [chem.NumMeasurands]chem.State
-	endMemberSum float64
-	lineage      lineage.Digest
-}
 
 // NewBuilder opens a builder for one source, whose compositions are all of one
 // kind.
@@ -133,13 +119,9 @@ func (b *Builder) Append(a *Analysis) error {
 		return fmt.Errorf("%s: line %d: %w", problem.Clean(b.source), a.Line, err)
 	}
 	if b.rows == nil {
-		b.rows = make([]staged, 0, BatchRows)
+		b.rows = make([]Analysis, 0, BatchRows)
 	}
-	b.rows = append(b.rows, staged{
-		line: int32(a.Line), column: int32(a.Column), phase: a.Phase, text: a.Text,
-		number: a.Number, has: a.Has, value: a.Composition.Value, sigma: a.Sigma,
-		state: a.Composition.State, endMemberSum: a.EndMemberSum, lineage: a.Lineage,
-	})
+	b.rows = append(b.rows, *a)
 	for _, t := range a.Text {
 		b.text += len(t)
 	}

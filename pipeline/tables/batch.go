@@ -6,6 +6,7 @@ import (
 	"github.com/apache/arrow/go/v17/arrow/bitutil"
 	"github.com/apache/arrow/go/v17/arrow/memory"
 
+	"tieline/pipeline/lineage"
 	"tieline/thermo/chem"
 )
 
@@ -19,27 +20,27 @@ func (b *Builder) flush() {
 	f := flusher{rows: b.rows}
 	out := &Batch{Source: b.source, Kind: b.kind}
 	for t := range out.text {
-		out.text[t] = f.text(Text(t).String(), func(r *staged) string { return r.text[t] })
+		out.text[t] = f.text(Text(t).String(), func(r *Analysis) string { return r.Text[t] })
 	}
-	out.phase = f.text("phase", func(r *staged) string { return string(r.phase) })
-	out.line = f.int32s("line", func(r *staged) int32 { return r.line }, true)
-	out.column = f.int32s("column", func(r *staged) int32 { return r.column }, false)
+	out.phase = f.text("phase", func(r *Analysis) string { return string(r.Phase) })
+	out.line = f.int32s("line", func(r *Analysis) int32 { return int32(r.Line) }, true)
+	out.column = f.int32s("column", func(r *Analysis) int32 { return int32(r.Column) }, false)
 	for n := range out.number {
-		out.number[n] = f.floats(Number(n).String(), func(r *staged) (float64, bool) { return r.number[n], r.has[n] })
+		out.number[n] = f.floats(Number(n).String(), func(r *Analysis) (float64, bool) { return r.Number[n], r.Has[n] })
 	}
 	for m := range chem.NumMeasurands {
 		c := measuredColumn{of: m}
-		c.value = f.floats(m.String(), func(r *staged) (float64, bool) {
-			return r.value[m], r.state[m] == chem.Measured || r.value[m] != 0
+		c.value = f.floats(m.String(), func(r *Analysis) (float64, bool) {
+			return r.Composition.Value[m], r.Composition.State[m] == chem.Measured || r.Composition.Value[m] != 0
 		})
 		c.state = f.states(m.String()+" state", m)
 		if c.value != nil || c.state != nil {
 			out.measured = append(out.measured, c)
 		}
-		out.sigma[m] = f.floats(m.String()+" sigma", func(r *staged) (float64, bool) { return r.sigma[m], r.sigma[m] != 0 })
+		out.sigma[m] = f.floats(m.String()+" sigma", func(r *Analysis) (float64, bool) { return r.Sigma[m], r.Sigma[m] != 0 })
 	}
 	if b.kind == chem.EndMember {
-		out.endMemberSum = f.floats("end_member_sum", func(r *staged) (float64, bool) { return r.endMemberSum, true })
+		out.endMemberSum = f.floats("end_member_sum", func(r *Analysis) (float64, bool) { return r.EndMemberSum, true })
 	}
 	out.lineage = f.lineages()
 	out.record = array.NewRecord(arrow.NewSchema(f.fields, nil), f.arrays, int64(len(b.rows)))
@@ -50,7 +51,7 @@ func (b *Builder) flush() {
 
 // flusher makes Arrow columns of staged rows and notes them for the record.
 type flusher struct {
-	rows   []staged
+	rows   []Analysis
 	fields []arrow.Field
 	arrays []arrow.Array
 }
@@ -61,7 +62,7 @@ func (f *flusher) add(name string, a arrow.Array, nullable bool) {
 }
 
 // bitmap has a bit set for every row that is valid; nil where all are.
-func (f *flusher) bitmap(valid func(*staged) bool) (bits *memory.Buffer, nulls int) {
+func (f *flusher) bitmap(valid func(*Analysis) bool) (bits *memory.Buffer, nulls int) {
 	set := make([]byte, bitutil.BytesForBits(int64(len(f.rows))))
 	for i := range f.rows {
 		if valid(&f.rows[i]) {
@@ -81,8 +82,8 @@ func (f *flusher) data(t arrow.DataType, nulls int, buffers ...*memory.Buffer) *
 }
 
 // floats is nil where no row has a value. -0 becomes 0.
-func (f *flusher) floats(name string, get func(*staged) (float64, bool)) *array.Float64 {
-	bits, nulls := f.bitmap(func(r *staged) bool { _, ok := get(r); return ok })
+func (f *flusher) floats(name string, get func(*Analysis) (float64, bool)) *array.Float64 {
+	bits, nulls := f.bitmap(func(r *Analysis) bool { _, ok := get(r); return ok })
 	if nulls == len(f.rows) {
 		return nil
 	}
@@ -99,7 +100,7 @@ func (f *flusher) floats(name string, get func(*staged) (float64, bool)) *array.
 }
 
 // int32s is nil where every row has 0, unless always.
-func (f *flusher) int32s(name string, get func(*staged) int32, always bool) *array.Int32 {
+func (f *flusher) int32s(name string, get func(*Analysis) int32, always bool) *array.Int32 {
 	values := make([]int32, len(f.rows))
 	any := always
 	for i := range f.rows {
@@ -120,7 +121,7 @@ func (f *flusher) int32s(name string, get func(*staged) int32, always bool) *arr
 func (f *flusher) states(name string, m chem.Measurand) *array.Uint8 {
 	said := true
 	for i := range f.rows {
-		s := f.rows[i].state[m]
+		s := f.rows[i].Composition.State[m]
 		said = said && (s == chem.Measured || s == chem.Missing)
 	}
 	if said {
@@ -128,7 +129,7 @@ func (f *flusher) states(name string, m chem.Measurand) *array.Uint8 {
 	}
 	values := make([]uint8, len(f.rows))
 	for i := range f.rows {
-		values[i] = uint8(f.rows[i].state[m])
+		values[i] = uint8(f.rows[i].Composition.State[m])
 	}
 	a := array.NewUint8Data(f.data(arrow.PrimitiveTypes.Uint8, 0, nil, memory.NewBufferBytes(values)))
 	f.add(name, a, false)
@@ -136,10 +137,10 @@ func (f *flusher) states(name string, m chem.Measurand) *array.Uint8 {
 }
 
 func (f *flusher) lineages() *array.FixedSizeBinary {
-	t := &arrow.FixedSizeBinaryType{ByteWidth: len(staged{}.lineage)}
+	t := &arrow.FixedSizeBinaryType{ByteWidth: len(lineage.Digest{})}
 	values := make([]byte, 0, len(f.rows)*t.ByteWidth)
 	for i := range f.rows {
-		values = append(values, f.rows[i].lineage[:]...)
+		values = append(values, f.rows[i].Lineage[:]...)
 	}
 	a := array.NewFixedSizeBinaryData(f.data(t, 0, nil, memory.NewBufferBytes(values)))
 	f.add("lineage", a, false)
@@ -171,8 +172,8 @@ const maxWords = 256
 
 // text stores a column as codes where its texts repeat at least once on
 // average; nothing where all are "".
-func (f *flusher) text(name string, get func(*staged) string) textColumn {
-	bits, nulls := f.bitmap(func(r *staged) bool { return get(r) != "" })
+func (f *flusher) text(name string, get func(*Analysis) string) textColumn {
+	bits, nulls := f.bitmap(func(r *Analysis) bool { return get(r) != "" })
 	if nulls == len(f.rows) {
 		return textColumn{}
 	}
@@ -196,7 +197,7 @@ func (f *flusher) text(name string, get func(*staged) string) textColumn {
 
 // words gives the different texts in order of first use, and each row's; codes
 // is nil where there are more than maxWords.
-func (f *flusher) words(get func(*staged) string) (words []string, codes []uint8) {
+func (f *flusher) words(get func(*Analysis) string) (words []string, codes []uint8) {
 	seen := map[string]uint8{}
 	codes = make([]uint8, len(f.rows))
 	for i := range f.rows {
