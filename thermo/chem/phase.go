@@ -1,5 +1,10 @@
 package chem
 
+import (
+	"maps"
+	"slices"
+)
+
 // Phase is a mineral symbol after Warr LN (2021) IMA-CNMNC approved mineral
 // symbols, Mineral Mag 85:291-320.
 type Phase string
@@ -32,3 +37,6 @@ func (p Phase) Known() bool { _, ok := phases[p]; return ok }
 
 // Role is the part p plays in a pair, Afs for sanidine, Cpx for diopside; "" for none.
 func (p Phase) Role() Phase { return phases[p] }
+
+// Phases lists every symbol tieline accepts, in alphabetical order.
+func Phases() []Phase { return slices.Sorted(maps.Keys(phases)) }
