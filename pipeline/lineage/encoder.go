@@ -29,6 +29,7 @@ const flushAt = 4096
 type Encoder struct {
 	buf  []byte
 	hash hash.Hash
+	sum  [sha256.Size]byte // here so that Sum allocates nothing
 }
 
 // New opens an encoding. The domain says what is encoded, so that a pair and an
@@ -105,11 +106,11 @@ func (e *Encoder) Sum() Digest {
 }
 
 // Sum256 gives all 256 bits.
-func (e *Encoder) Sum256() (full [sha256.Size]byte) {
+func (e *Encoder) Sum256() [sha256.Size]byte {
 	e.hash.Write(e.buf)
 	e.buf = e.buf[:0]
-	e.hash.Sum(full[:0])
-	return full
+	e.hash.Sum(e.sum[:0])
+	return e.sum
 }
 
 func (e *Encoder) flush() *Encoder {
