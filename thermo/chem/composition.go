@@ -90,6 +90,14 @@ type Composition struct {
 	Kind  Kind
 	Value [NumMeasurands]float64 // wt%, apfu or mole fraction; 0 where State is Missing or NotAnalysed
 	State [NumMeasurands]State
+	// Oxygens is what the apfu are given on, where Kind is Apfu. 0: on whatever
+	// oxygens the formula asked for has.
+	Oxygens float64
+}
+
+// Determined says whether the source looked for m: measured, or below detection.
+func (c *Composition) Determined(m Measurand) bool {
+	return c.State[m] == Measured || c.State[m] == BelowDetection
 }
 
 // Amount is what counts as present: the value where measured, else 0.

@@ -110,10 +110,13 @@ type Info struct {
 	// one-phase method; without it the temperature is a minimum. "" for none.
 	NeedsBeside chem.Phase
 	Needs       []*Quantity // their reasons become the lanes'
-	Basis       Basis
-	Range       Range
-	Sigma       Sigma
-	Standing    Standing
+	// Uses are the quantities Eval reads besides, those whose reasons count in
+	// some lanes only. They reach no leaf that Needs does not reach.
+	Uses     []*Quantity
+	Basis    Basis
+	Range    Range
+	Sigma    Sigma
+	Standing Standing
 }
 
 // Method is one published calibration. Const is exactly the constants Eval

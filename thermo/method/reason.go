@@ -13,6 +13,7 @@ const (
 	NegativeT
 	NeedsPressure
 	NotFinite
+	M2Full
 	numReasons
 )
 
@@ -25,6 +26,7 @@ var texts = [numReasons]string{
 	NegativeT:      "the equation gives no temperature above absolute zero",
 	NeedsPressure:  "needs pressure: dT/dP is above 1 degC/kbar and none is given",
 	NotFinite:      "the equation has no finite value here",
+	M2Full:         "Ca/(1 - Na) is 1 or more: no Mg2Si2O6 is left to take the logarithm of",
 }
 
 // String is the text tables and people see.
