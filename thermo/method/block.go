@@ -10,7 +10,8 @@ type Block struct {
 	N int
 	P []chem.Bar
 
-	cols map[*Quantity]*column
+	cols  map[*Quantity]*column
+	order []*Quantity // of cols, by first use
 }
 
 type column struct {
@@ -44,6 +45,7 @@ func (b *Block) column(q *Quantity) *column {
 	if c == nil {
 		c = &column{}
 		b.cols[q] = c
+		b.order = append(b.order, q)
 	}
 	if cap(c.q) < b.N {
 		c.q, c.why = make([]float64, b.N), make([]Reason, b.N)
@@ -84,6 +86,18 @@ func (b *Block) fill(q *Quantity) *column {
 	q.Fill(b, c.q, c.why)
 	c.filled = true
 	return c
+}
+
+// Filled gives the quantities that were set or filled since the last Reset, in
+// the order they were first asked for.
+func (b *Block) Filled() []*Quantity {
+	var out []*Quantity
+	for _, q := range b.order {
+		if b.cols[q].filled {
+			out = append(out, q)
+		}
+	}
+	return out
 }
 
 // Join keeps the first reason of each row.

@@ -1,5 +1,7 @@
 package method
 
+import "tieline/thermo/chem"
+
 // Reason says why there is no number; 0 means there is one.
 type Reason uint8
 
@@ -31,3 +33,14 @@ var texts = [numReasons]string{
 
 // String is the text tables and people see.
 func (r Reason) String() string { return texts[r] }
+
+// ReasonFor judges a temperature an equation gave: NotFinite, NegativeT, or OK.
+func ReasonFor(t chem.Kelvin) Reason {
+	switch {
+	case t-t != 0:
+		return NotFinite
+	case t <= 0:
+		return NegativeT
+	}
+	return OK
+}
