@@ -1,0 +1,137 @@
+package discrepancy
+
+import (
+	"cmp"
+	"math"
+	"slices"
+
+	"tieline/pipeline/tables"
+	"tieline/thermo/method"
+)
+
+// AsPublished is the method name under which published temperatures take part.
+const AsPublished = "as-published"
+
+// Lane is one column of temperatures: a method's component over all rows of a
+// pair kind, or the published temperatures.
+type Lane struct {
+	Method    string
+	Component string
+	Info      *method.Info // nil for AsPublished
+	Own       bool         // the lane's method reads the rows themselves, not one member of a pair
+	T         []float64    // degC per row; NaN where there is no number or the estimate is set aside
+}
+
+// Through gives the lane as seen from other rows: row i takes this lane's row
+// rows[i], and no number where that is -1.
+func (l Lane) Through(rows []int) Lane {
+	t := make([]float64, len(rows))
+	for i, r := range rows {
+		t[i] = math.NaN()
+		if r >= 0 {
+			t[i] = l.T[r]
+		}
+	}
+	l.T, l.Own = t, false
+	return l
+}
+
+// Grouping is one way to split the rows.
+type Grouping struct {
+	By    string   // "all", or a column: unit, locality, ...
+	Group []string // per row; "" rows belong to no group
+}
+
+// Rows is one pair kind ready to compare: lanes in the order of the methods,
+// AsPublished last.
+type Rows struct {
+	PairKind string
+	Variant  string
+	Lanes    []Lane
+	Sample   []string // per row
+	Source   []string // per row
+}
+
+// Compare gives the statistics of every two lanes in every group. Two lanes are
+// left out where one method is a function of the other, where neither reads the
+// rows themselves (they are compared under their own kind), and where they
+// share no row.
+func Compare(r *Rows, groupings []Grouping) []tables.DiscrepancyRow {
+	var out []tables.DiscrepancyRow
+	for _, g := range groupings {
+		for _, name := range groups(g.Group) {
+			rows := members(g.Group, name)
+			for i := range r.Lanes {
+				for j := i + 1; j < len(r.Lanes); j++ {
+					if row, ok := r.compare(&r.Lanes[i], &r.Lanes[j], rows); ok {
+						row.GroupBy, row.Group = g.By, name
+						out = append(out, row)
+					}
+				}
+			}
+		}
+	}
+	return out
+}
+
+func (r *Rows) compare(a, b *Lane, rows []int32) (tables.DiscrepancyRow, bool) {
+	if derived(a, b) || !(a.Own || b.Own) {
+		return tables.DiscrepancyRow{}, false
+	}
+	var d []float64
+	samples, sources := map[string]bool{}, map[string]bool{}
+	for _, i := range rows {
+		if ta, tb := a.T[i], b.T[i]; !math.IsNaN(ta) && !math.IsNaN(tb) {
+			d = append(d, ta-tb)
+			samples[r.Sample[i]] = true
+			sources[r.Source[i]] = true
+		}
+	}
+	if len(d) == 0 {
+		return tables.DiscrepancyRow{}, false
+	}
+	s := Describe(d)
+	return tables.DiscrepancyRow{
+		PairKind: r.PairKind, Variant: r.Variant,
+		MethodA: a.Method, ComponentA: a.Component, MethodB: b.Method, ComponentB: b.Component,
+		N: int64(s.N), NSamples: int64(len(samples)), NSources: int64(len(sources)),
+		MeanDiffC: ptr(s.Mean), MedianDiffC: ptr(s.Median), MedianAbsDiffC: ptr(s.MedianAbs),
+		SDC: ptr(s.SD), MADC: ptr(s.MAD), LoALowC: ptr(s.LoALow), LoAHighC: ptr(s.LoAUp),
+	}, true
+}
+
+func derived(a, b *Lane) bool {
+	return a.Info != nil && b.Info != nil &&
+		(slices.Contains(a.Info.DerivedFrom, b.Method) || slices.Contains(b.Info.DerivedFrom, a.Method))
+}
+
+// groups lists the names that occur, sorted.
+func groups(of []string) []string {
+	seen := map[string]bool{}
+	var out []string
+	for _, g := range of {
+		if g != "" && !seen[g] {
+			seen[g] = true
+			out = append(out, g)
+		}
+	}
+	slices.SortFunc(out, cmp.Compare[string])
+	return out
+}
+
+func members(of []string, name string) []int32 {
+	var out []int32
+	for i, g := range of {
+		if g == name {
+			out = append(out, int32(i))
+		}
+	}
+	return out
+}
+
+func ptr(v float64) *float64 {
+	if math.IsNaN(v) {
+		return nil
+	}
+	return &v
+}

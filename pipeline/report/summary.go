@@ -1,0 +1,175 @@
+// Package report puts a run into words for the person at the desk.
+package report
+
+import (
+	"fmt"
+	"strings"
+
+	"tieline/pipeline/problem"
+	"tieline/pipeline/tables"
+)
+
+// Summary is what a run says when it ends.
+type Summary struct {
+	Title         string
+	Sources       []Source
+	Counts        []Count
+	Temperatures  []Temperature
+	NoNumbers     []Tally // estimates without a number: what, why, how many
+	Findings      []Tally // rules that fired
+	SetAside      []Row   // analyses set aside, the first of them
+	SetAsideMore  int     // how many more
+	Discrepancies []tables.DiscrepancyRow
+	Cautions      []string
+}
+
+// Source is one file and what became of its rows.
+type Source struct {
+	ID, File                      string
+	Rows, Kept, Flagged, SetAside int
+	Unused                        []string // headers of columns nothing was made of
+}
+
+// Count is rows in and by verdict.
+type Count struct {
+	What                        string
+	In, Kept, Flagged, SetAside int64
+}
+
+// Temperature is one method and component over all pairs.
+type Temperature struct {
+	PairKind, Method, Component string
+	N                           int
+	Median, Low, High           float64 // degC
+	SigmaC                      float64 // calibration 1-sigma, degC
+}
+
+// Tally is how often something happened, with its first case.
+type Tally struct {
+	What, Effect string
+	N            int64
+	Example      string
+}
+
+// Row is one row set aside and why.
+type Row struct{ ID, Why string }
+
+// Text is the summary as people read it, at most about 100 columns wide.
+func (s *Summary) Text() string {
+	var b strings.Builder
+	fmt.Fprintf(&b, "%s\n", problem.Clean(s.Title))
+	s.sources(&b)
+	s.temperatures(&b)
+	s.discrepancies(&b)
+	s.quality(&b)
+	b.WriteString("\nBefore you use these\n")
+	for _, c := range s.Cautions {
+		wrap(&b, "  - ", "    ", c)
+	}
+	return b.String()
+}
+
+func (s *Summary) sources(b *strings.Builder) {
+	fmt.Fprintf(b, "\n%-24s %8s %8s %8s %10s\n", "Analyses by source", "in", "kept", "flagged", "set aside")
+	for _, r := range s.Sources {
+		fmt.Fprintf(b, "  %-22s %8d %8d %8d %10d\n", problem.Clean(r.ID), r.Rows, r.Kept, r.Flagged, r.SetAside)
+	}
+	for _, c := range s.Counts {
+		fmt.Fprintf(b, "%-24s %8d %8d %8d %10d\n", "All "+c.What, c.In, c.Kept, c.Flagged, c.SetAside)
+	}
+	for _, r := range s.Sources {
+		if len(r.Unused) > 0 {
+			wrap(b, "  ", "    ", fmt.Sprintf("%s: columns nothing was made of: %s", problem.Clean(r.ID), cleanJoin(r.Unused)))
+		}
+	}
+}
+
+func cleanJoin(texts []string) string {
+	out := make([]string, len(texts))
+	for i, t := range texts {
+		out[i] = problem.Clean(t)
+	}
+	return strings.Join(out, ", ")
+}
+
+func (s *Summary) temperatures(b *strings.Builder) {
+	b.WriteString("\nTemperatures, degC (rows set aside left out)\n")
+	kind := ""
+	for _, t := range s.Temperatures {
+		if t.PairKind != kind {
+			kind = t.PairKind
+			fmt.Fprintf(b, "  %-42s %6s %8s %8s %8s %8s\n", kind, "n", "lowest", "median", "highest", "cal. +-")
+		}
+		sigma := ""
+		if t.SigmaC > 0 {
+			sigma = fmt.Sprintf("%.0f", t.SigmaC)
+		}
+		name := name(t.Method, t.Component)
+		if t.N == 0 {
+			fmt.Fprintf(b, "    %-40s %6d\n", name, 0)
+			continue
+		}
+		fmt.Fprintf(b, "    %-40s %6d %8.0f %8.0f %8.0f %8s\n", name, t.N, t.Low, t.Median, t.High, sigma)
+	}
+	for _, n := range s.NoNumbers {
+		wrap(b, "  ", "    ", fmt.Sprintf("no number, %d times, %s: %s", n.N, n.What, n.Effect))
+	}
+}
+
+func name(method, component string) string {
+	if component == "" {
+		return method
+	}
+	return method + " " + component
+}
+
+func (s *Summary) discrepancies(b *strings.Builder) {
+	if len(s.Discrepancies) == 0 {
+		return
+	}
+	b.WriteString("\nWhere calibrations disagree, a minus b, degC (all rows together)\n")
+	fmt.Fprintf(b, "  %-76s %5s %7s %7s\n", "a - b", "n", "median", "SD")
+	for _, d := range s.Discrepancies {
+		sd := ""
+		if d.SDC != nil {
+			sd = fmt.Sprintf("%.0f", *d.SDC)
+		}
+		fmt.Fprintf(b, "  %-76s %5d %+7.0f %7s\n", name(d.MethodA, d.ComponentA)+" - "+name(d.MethodB, d.ComponentB), d.N, *d.MedianDiffC, sd)
+	}
+}
+
+func (s *Summary) quality(b *strings.Builder) {
+	if len(s.Findings) > 0 {
+		fmt.Fprintf(b, "\nWhat the rules found\n")
+	}
+	for _, f := range s.Findings {
+		wrap(b, "  ", "    ", fmt.Sprintf("%s: %d x %s, first %s", f.Effect, f.N, f.What, problem.Clean(f.Example)))
+	}
+	if len(s.SetAside) > 0 {
+		b.WriteString("\nAnalyses set aside\n")
+	}
+	for _, r := range s.SetAside {
+		wrap(b, "  ", "    ", problem.Clean(r.ID)+": "+r.Why)
+	}
+	if s.SetAsideMore > 0 {
+		fmt.Fprintf(b, "  and %d more; every one is in tables/analyses.parquet with its reasons\n", s.SetAsideMore)
+	}
+}
+
+// wrap writes text in lines of at most 100 characters, the first behind one
+// lead and the others behind another.
+func wrap(b *strings.Builder, first, rest, text string) {
+	line, n := first, 0
+	for _, w := range strings.Fields(text) {
+		if n > 0 && len(line)+1+len(w) > 100 {
+			b.WriteString(line + "\n")
+			line, n = rest, 0
+		}
+		if n > 0 {
+			line += " "
+		}
+		line += w
+		n++
+	}
+	b.WriteString(line + "\n")
+}
