@@ -14,11 +14,8 @@ import (
 	"tieline/thermo/chem"
 )
 
-// check reports what is wrong with a manifest whose keys and types are right:
-// first what the tags of its fields ask, which the schema asks too, then what
-// no schema can say.
+// check reports what no schema can say.
 func (r *reader) check(m *Manifest) {
-	r.fields(reflect.ValueOf(m).Elem(), "")
 	r.sources(m)
 	r.within("qc.totals_kept_wt", m.QC.TotalsKeptWt, "qc.totals_flagged_wt", m.QC.TotalsFlaggedWt)
 	r.within("qc.pyroxene_sum_kept", m.QC.PyroxeneSumKept, "qc.pyroxene_sum_flagged", m.QC.PyroxeneSumFlagged)
@@ -28,7 +25,7 @@ func (r *reader) check(m *Manifest) {
 	r.different("groups.by", m.Groups.By)
 }
 
-// fields checks a struct's fields against their tags.
+// fields checks a struct's fields against their tags, as the schema does.
 func (r *reader) fields(v reflect.Value, where string) {
 	t := v.Type()
 	for i := range t.NumField() {
@@ -38,9 +35,12 @@ func (r *reader) fields(v reflect.Value, where string) {
 		}
 		p, f, rules := join(where, name), v.Field(i), rulesOf(t.Field(i))
 		_, given := r.at[p]
+		if r.at == nil { // no text: what every manifest holds is there to be checked
+			given = !strings.HasSuffix(t.Field(i).Tag.Get("json"), ",omitempty")
+		}
 		switch {
 		case r.bad[p]:
-		case rules.required && !given && f.IsZero():
+		case rules.required && f.IsZero() && (!given || r.at == nil):
 			r.complain(p, r.at[where], "missing key", "", "the key is missing", "write "+example(name, f.Type()))
 		case isTables(f.Type()):
 			for j := range f.Len() {
@@ -51,14 +51,11 @@ func (r *reader) fields(v reflect.Value, where string) {
 			}
 		case f.Kind() == reflect.Struct && f.Type().PkgPath() == t.PkgPath():
 			r.fields(f, p)
-		case given || !f.IsZero() || always(t.Field(i)):
+		case given || !f.IsZero():
 			r.values(f, p, rules)
 		}
 	}
 }
-
-// always says whether a field holds a value in every manifest, if only its default.
-func always(f reflect.StructField) bool { return !strings.HasSuffix(f.Tag.Get("json"), ",omitempty") }
 
 func example(name string, t reflect.Type) string {
 	switch {
@@ -286,6 +283,9 @@ func (r *reader) markers(s *Source, p string) {
 		lp := p + "." + l.name
 		for i, text := range l.texts {
 			folded := strings.ToLower(strings.TrimSpace(text))
+			if folded == "" {
+				continue
+			}
 			before, twice := seen[folded]
 			if twice && before != l.name && !r.bad[lp] {
 				ip := fmt.Sprintf("%s[%d]", lp, i)

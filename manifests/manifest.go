@@ -4,6 +4,8 @@
 package manifests
 
 import (
+	"math"
+
 	"github.com/pelletier/go-toml/v2"
 
 	"tieline/thermo/chem"
@@ -91,6 +93,8 @@ type Source struct {
 	PublishedKind string `toml:"published_kind" json:"published_kind,omitempty" jsonschema:"enum=experiment,enum=thermometer,enum=estimate"`
 	// The method of the published temperatures.
 	PublishedMethod string `toml:"published_method" json:"published_method,omitempty"`
+	// The rocks of this source where a method asks for them, as the method names them ("mantle peridotite"); a method made for other rocks is computed and flagged.
+	Setting string `toml:"setting" json:"setting,omitempty"`
 
 	// Cell texts that mean not analysed, compared without case after trimming; a list given here replaces the default. Default: "n.a.", "na", "n/a" (common practice, no source).
 	NotAnalysed []string `toml:"not_analysed" json:"not_analysed"`
@@ -174,4 +178,10 @@ type Uncertainty struct {
 type Groups struct {
 	// Columns to group by. Default: none.
 	By []string `toml:"by" json:"by,omitempty" jsonschema:"enum=source,enum=locality,enum=unit,enum=sample,enum=texture,enum=generation"`
+}
+
+// OxideSigma is the 1-sigma of an oxide of c wt% where its source gives none, wt%.
+func (u *Uncertainty) OxideSigma(c float64) float64 {
+	r := float64(u.OxideSigmaRelative * c)
+	return math.Sqrt(float64(r*r) + float64(u.OxideSigmaCountingWt*math.Max(c, 0)) + u.OxideSigmaFloorWt2)
 }

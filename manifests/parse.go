@@ -10,6 +10,7 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"reflect"
 	"strings"
 
 	"tieline/pipeline/problem"
@@ -31,7 +32,7 @@ func Schema() []byte { return bytes.Clone(schema) }
 // Parse reads a manifest's text; name is what messages call it. The list is nil
 // where there is no problem; the manifest is nil where there is one.
 func Parse(name string, text []byte) (*Manifest, *problem.List) {
-	r := &reader{name: name, text: bytes.TrimPrefix(text, []byte("\ufeff")), at: positions{}, bad: map[string]bool{}, problems: &problem.List{}}
+	r := newReader(name, bytes.TrimPrefix(text, []byte("\ufeff")))
 	switch {
 	case len(text) > MaxBytes:
 		r.problems.Add(problem.Problem{Source: name, Kind: "size", Found: fmt.Sprintf("more than %d bytes of manifest", MaxBytes), Expected: "a manifest", Do: "is this a data file?"})
@@ -42,6 +43,7 @@ func Parse(name string, text []byte) (*Manifest, *problem.List) {
 	}
 	m := defaults()
 	if r.read(m) {
+		r.fields(reflect.ValueOf(m).Elem(), "")
 		for i := range m.Sources {
 			m.Sources[i].fill()
 		}
@@ -182,7 +184,8 @@ func FromCanonical(text []byte) (*Manifest, error) {
 	if !bytes.Equal(m.Canonical(), text) {
 		return nil, errors.New("canonical manifest: written another way than tieline writes it; was it edited?")
 	}
-	r := &reader{name: "canonical manifest", at: positions{}, bad: map[string]bool{}, problems: &problem.List{}}
+	r := &reader{name: "canonical manifest", bad: map[string]bool{}, problems: &problem.List{}}
+	r.fields(reflect.ValueOf(m).Elem(), "")
 	r.check(m)
 	if err := r.problems.Err(); err != nil {
 		return nil, err

@@ -1,11 +1,11 @@
 package manifests
 
 import (
-	"bytes"
 	"errors"
 	"fmt"
 	"math"
 	"reflect"
+	"sort"
 	"strconv"
 	"strings"
 	"unicode/utf8"
@@ -20,11 +20,24 @@ import (
 // go-toml's own decoder stops at the first wrong type and knows no positions of
 // the values it set; here every problem is collected and every key's place kept.
 type reader struct {
-	name     string
-	text     []byte
-	at       positions
-	bad      map[string]bool // paths already complained of
-	problems *problem.List
+	name       string
+	text       []byte
+	lines      []int    // where each line of the text begins
+	seen       position // the last position asked for, at seenOffset
+	seenOffset int
+	at         positions
+	bad        map[string]bool // paths already complained of
+	problems   *problem.List
+}
+
+func newReader(name string, text []byte) *reader {
+	r := &reader{name: name, text: text, lines: []int{0}, at: positions{}, bad: map[string]bool{}, problems: &problem.List{}}
+	for i, c := range text {
+		if c == '\n' {
+			r.lines = append(r.lines, i+1)
+		}
+	}
+	return r
 }
 
 // table is where the key-values that follow a header go: a struct or a map.
@@ -77,8 +90,9 @@ func (r *reader) syntax(err error) {
 		p.Line, p.Column = at.line, at.column
 		p.Found = "this is no TOML: " + problem.Clean(parse.Message)
 	case errors.As(err, &decode):
-		p.Line, p.Column = decode.Position()
-		p.Column = r.characters(p.Line, p.Column)
+		line, column := decode.Position() // the column in bytes
+		at := r.position(r.lines[line-1] + column - 1)
+		p.Line, p.Column = at.line, at.column
 		p.Found = "this is no TOML: " + problem.Clean(strings.TrimPrefix(decode.Error(), "toml: "))
 	}
 	r.problems.Add(p)
@@ -347,7 +361,7 @@ func (r *reader) wrong(t reflect.Type, n *unstable.Node, path string) bool {
 	case t.Kind() == reflect.String || t == reflect.TypeFor[Quantity]():
 		do = "put it in quotes"
 	case t.Kind() == reflect.Slice && n.Kind == unstable.String:
-		do = "write [" + shown(n) + "]"
+		do = "write [" + problem.Quote(string(n.Data)) + "]"
 	}
 	if n.Kind == unstable.Array || n.Kind == unstable.InlineTable {
 		do = ""
@@ -369,18 +383,16 @@ func (r *reader) add(at position, path, kind, found, expected, do string) {
 
 // position turns an offset in the text into a line and a column in characters.
 func (r *reader) position(offset int) position {
-	before := r.text[:max(0, min(offset, len(r.text)))]
-	start := bytes.LastIndexByte(before, '\n') + 1
-	return position{1 + bytes.Count(before, []byte{'\n'}), 1 + utf8.RuneCount(before[start:])}
-}
-
-// characters turns a column in bytes into one in characters.
-func (r *reader) characters(line, column int) int {
-	text := r.text
-	for ; line > 1; line-- {
-		text = text[bytes.IndexByte(text, '\n')+1:]
+	line := sort.Search(len(r.lines), func(i int) bool { return r.lines[i] > offset })
+	// Offsets come in reading order, so a long line is counted once and not
+	// once for each of its values.
+	from, column := r.lines[line-1], 1
+	if r.seen.line == line && r.seenOffset <= offset {
+		from, column = r.seenOffset, r.seen.column
 	}
-	return 1 + utf8.RuneCount(text[:max(0, min(column-1, len(text)))])
+	r.seen = position{line, column + utf8.RuneCount(r.text[from:min(offset, len(r.text))])}
+	r.seenOffset = offset
+	return r.seen
 }
 
 func keysOf(e *unstable.Node) []*unstable.Node {
