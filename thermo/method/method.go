@@ -126,3 +126,14 @@ type Method struct {
 	Const any
 	Eval  func(b *Block, lanes []Lane)
 }
+
+// IronConvention names the method's ferric-iron convention; "" where it reads no
+// structural formula, as with feldspar fractions of Ca, Na and K.
+func (m *Method) IronConvention() string {
+	for _, q := range Leaves(m.Needs) {
+		if len(q.Leaf.Cations) > 0 {
+			return m.Basis.String()
+		}
+	}
+	return ""
+}

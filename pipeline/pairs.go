@@ -1,0 +1,182 @@
+package pipeline
+
+import (
+	"strings"
+
+	"tieline/pipeline/lineage"
+	"tieline/pipeline/pairing"
+	"tieline/pipeline/tables"
+	"tieline/qc"
+	"tieline/thermo/chem"
+	"tieline/thermo/formula"
+	"tieline/thermo/method"
+)
+
+// pairUp pairs the analyses and gives the findings on those that carry a pair
+// label and got no partner.
+func (s *state) pairUp() (findings []tables.FindingRow) {
+	var without []pairing.Unpaired
+	s.pairs, without = pairing.Listed(s.all)
+	for _, u := range without {
+		b, row := s.all.At(int(u.Analysis))
+		findings = append(findings, s.findingRows("analysis", b.Text(tables.AnalysisID, row), u.Analysis,
+			[]qc.Finding{{Rule: "no partner", Effect: qc.Noted, Limit: "one of each", Detail: u.Why}})...)
+	}
+	s.pair = make([]pairState, len(s.pairs))
+	s.firstPair = make([]int32, s.all.Len())
+	for i := range s.firstPair {
+		s.firstPair[i] = -1
+	}
+	s.recordRoles()
+	return findings
+}
+
+// makePair fills the pair's state and gives its row and findings.
+func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
+	p := s.pairs[i]
+	a, ra := s.all.At(int(p.A))
+	b, rb := s.all.At(int(p.B))
+	for _, x := range []int32{p.A, p.B} {
+		if s.firstPair[x] < 0 {
+			s.firstPair[x] = int32(i)
+		}
+	}
+	seen := &qc.Pair{KD: feMgDistribution(p.Kind, a, ra, b, rb)}
+	for j, side := range []struct {
+		b   *tables.Batch
+		row int
+	}{{a, ra}, {b, rb}} {
+		if v, ok := side.b.Number(tables.PKbar, side.row); ok {
+			seen.PKbar[j] = &v
+		}
+		if v, ok := side.b.Number(tables.PublishedC, side.row); ok {
+			seen.PublishedC[j] = &v
+		}
+	}
+	st := &s.pair[i]
+	st.pressure = s.rowPressure(a, ra)
+	if other := s.rowPressure(b, rb); st.pressure.source != pFromSource && other.source == pFromSource {
+		st.pressure = other
+	}
+	if seen.PublishedAgree() {
+		st.published = rowPublished(a, ra)
+		if !st.published.given {
+			st.published = rowPublished(b, rb)
+		}
+	}
+	findings := qc.OfPair(seen)
+	v, reasons := qc.Judge(findings)
+	for _, x := range []int32{p.A, p.B} {
+		bx, rx := s.all.At(int(x))
+		v, reasons = qc.Inherit(v, reasons, s.verdicts[x], string(bx.Phase(rx))+": "+s.reasons[x])
+	}
+	st.verdict, st.reasons = v, reasons
+	kind := pairing.Kinds[p.Kind]
+	st.lineage = lineage.New("tieline pair 1").Text(kind.Name).Text(s.manifest.Pairing.Rule).
+		Digest(a.Lineage(ra)).Digest(b.Lineage(rb)).Sum()
+
+	row := tables.PairRow{
+		PairID: s.pairID(i), PairKind: kind.Name, Source: a.Source, Sample: a.Text(tables.Sample, ra),
+		Locality: s.pairText(i, tables.Locality), Unit: s.pairText(i, tables.Unit), Texture: s.pairText(i, tables.Texture),
+		PairLabel: a.Text(tables.PairLabel, ra), AAnalysisID: a.Text(tables.AnalysisID, ra), APhase: string(a.Phase(ra)),
+		BAnalysisID: b.Text(tables.AnalysisID, rb), BPhase: string(b.Phase(rb)), Rule: s.manifest.Pairing.Rule,
+		PSource: st.pressure.source, KdFeMg: seen.KD, Variant: variant,
+		Verdict: v.String(), Reasons: reasons, Lineage: st.lineage.String(),
+	}
+	if st.pressure.given() {
+		row.PKbar = &st.pressure.kbar
+		if st.pressure.sigma > 0 {
+			row.PSigmaKbar = &st.pressure.sigma
+		}
+	}
+	if st.published.given {
+		row.PublishedTC, row.PublishedKind = &st.published.c, st.published.kind
+	}
+	return row, s.findingRows("pair", row.PairID, p.A, findings)
+}
+
+// feMgDistribution is (Fe/Mg)cpx / (Fe/Mg)opx of a pyroxene pair, all iron; nil
+// where it can't be told.
+func feMgDistribution(kind int, a *tables.Batch, ra int, b *tables.Batch, rb int) *float64 {
+	if pairing.Kinds[kind].A != chem.Opx {
+		return nil
+	}
+	ratio := func(x *tables.Batch, row int) float64 {
+		var c chem.Composition
+		x.Composition(row, &c)
+		f := formula.Of(&c, method.Basis{Oxygens: 6, Cations: 4, Ferric: method.AllFe2})
+		if f.Why != method.OK || f.Apfu[chem.Mg] <= 0 {
+			return 0
+		}
+		return (f.Apfu[chem.Fe2] + f.Apfu[chem.Fe3]) / f.Apfu[chem.Mg]
+	}
+	opx, cpx := ratio(a, ra), ratio(b, rb)
+	if opx <= 0 || cpx <= 0 {
+		return nil
+	}
+	return finite(cpx / opx)
+}
+
+// recordRoles notes which samples hold which phases that a method wants beside
+// its own.
+func (s *state) recordRoles() {
+	s.roleIn = map[sampleRole]bool{}
+	wanted := map[chem.Phase]bool{}
+	for _, m := range s.methods {
+		if m.NeedsBeside != "" {
+			wanted[m.NeedsBeside] = true
+		}
+	}
+	for _, b := range s.all.Batches {
+		for row := range b.Len() {
+			if r := b.Phase(row).Role(); wanted[r] {
+				s.roleIn[sampleRole{b.Source, b.Text(tables.Sample, row), r}] = true
+			}
+		}
+	}
+}
+
+// beside says whether a phase is recorded beside an analysis: an analysis of it
+// in the same sample, or its symbol in the assemblage.
+func (s *state) beside(i int32, need chem.Phase) bool {
+	b, row := s.all.At(int(i))
+	if s.roleIn[sampleRole{b.Source, b.Text(tables.Sample, row), need}] {
+		return true
+	}
+	symbols := strings.FieldsFunc(b.Text(tables.Assemblage, row), func(r rune) bool { return strings.ContainsRune(" ,;+-/", r) })
+	for _, sym := range symbols {
+		if chem.Phase(sym).Role() == need {
+			return true
+		}
+	}
+	return false
+}
+
+func (s *state) pairID(i int) string {
+	a, ra := s.all.At(int(s.pairs[i].A))
+	return a.Source + "/" + a.Text(tables.Sample, ra) + "/" + a.Text(tables.PairLabel, ra) + ":" + pairing.Kinds[s.pairs[i].Kind].Name
+}
+
+// pairText is what the pair's rows say: the common text, the one that is given,
+// or both where they differ.
+func (s *state) pairText(i int, t tables.Text) string {
+	a, ra := s.all.At(int(s.pairs[i].A))
+	b, rb := s.all.At(int(s.pairs[i].B))
+	ta, tb := a.Text(t, ra), b.Text(t, rb)
+	switch {
+	case ta == tb || tb == "":
+		return ta
+	case ta == "":
+		return tb
+	}
+	return ta + " + " + tb
+}
+
+// itemText is pairText for a pair, the row's own text for one analysis.
+func (s *state) itemText(it item, t tables.Text) string {
+	if it.pair >= 0 {
+		return s.pairText(int(it.pair), t)
+	}
+	b, row := s.all.At(int(it.a))
+	return b.Text(t, row)
+}

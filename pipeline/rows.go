@@ -1,0 +1,78 @@
+package pipeline
+
+import (
+	"tieline/pipeline/discrepancy"
+	"tieline/pipeline/tables"
+	"tieline/qc"
+	"tieline/thermo/chem"
+	"tieline/thermo/formula"
+)
+
+// estimateRow starts the row of one temperature with what it shares with every
+// other of its item.
+func (s *state) estimateRow(k *kind, it item, methodID, component string) tables.EstimateRow {
+	b, r := s.all.At(int(it.a))
+	row := tables.EstimateRow{
+		Sample: b.Text(tables.Sample, r), Locality: s.itemText(it, tables.Locality), Unit: s.itemText(it, tables.Unit),
+		Texture: s.itemText(it, tables.Texture), Variant: variant, PairKind: k.name, Method: methodID, Component: component,
+	}
+	id := b.Text(tables.AnalysisID, r)
+	if it.pair >= 0 {
+		id = s.pairID(int(it.pair))
+		row.PairID = id
+	} else {
+		row.AnalysisID = id
+	}
+	row.EstimateID = id + "|" + methodID
+	if component != "" {
+		row.EstimateID += "|" + component
+	}
+	p := s.itemPressure(it)
+	row.PSource = p.source
+	if p.given() {
+		row.PKbar = &p.kbar
+	}
+	return row
+}
+
+// qcEstimate gathers what the rules on estimates look at.
+func (s *state) qcEstimate(k *kind, it item, l *discrepancy.Lane, est *estimate, p pressure) *qc.Estimate {
+	b, _ := s.all.At(int(it.a))
+	e := &qc.Estimate{
+		Info: l.Info, Component: l.Component, OutOf: est.outOf, OutOfValue: est.outOfValue,
+		Assumed: p.source == pFromManifest, PKbar: p.kbar, Setting: s.settings[b.Source], Beside: true,
+	}
+	if need := l.Info.NeedsBeside; need != "" {
+		e.Beside = s.beside(it.a, need)
+	}
+	if it.pair >= 0 && k.roles[0] == chem.Afs {
+		_, _, an := s.fractions(it.a)
+		_, or, anPl := s.fractions(it.b)
+		e.AnAfs, e.OrPl, e.AnPl = &an, &or, &anPl
+	}
+	return e
+}
+
+func (s *state) fractions(i int32) (ab, or, an float64) {
+	b, row := s.all.At(int(i))
+	var c chem.Composition
+	b.Composition(row, &c)
+	ab, or, an, _, _ = formula.Feldspar(&c)
+	return ab, or, an
+}
+
+// findingRows makes the qc table's rows of one row's findings; analysis says
+// where in the sources it stands.
+func (s *state) findingRows(rowKind, id string, analysis int32, findings []qc.Finding) []tables.FindingRow {
+	if len(findings) == 0 {
+		return nil
+	}
+	b, row := s.all.At(int(analysis))
+	line := int64(b.Line(row))
+	out := make([]tables.FindingRow, len(findings))
+	for i, f := range findings {
+		out[i] = tables.FindingRow{RowKind: rowKind, RowID: id, Rule: f.Rule, Effect: f.Effect.String(),
+			Value: f.Value, Limit: f.Limit, Detail: f.Detail, Source: b.Source, SourceLine: &line}
+	}
+	return out
+}

@@ -1,0 +1,223 @@
+package pipeline
+
+import (
+	"fmt"
+	"math"
+	"os"
+	"path/filepath"
+	"reflect"
+	"strings"
+
+	"tieline/ingest"
+	"tieline/manifests"
+	"tieline/pipeline/discrepancy"
+	"tieline/pipeline/problem"
+	"tieline/pipeline/report"
+	"tieline/pipeline/tables"
+	"tieline/thermo"
+	"tieline/thermo/method"
+)
+
+// TraceEstimate follows one estimate of a compilation back to its cells: it
+// reads the sources again, works that one temperature out, and compares it with
+// the same row of the result in runFolder, where there is one.
+func TraceEstimate(path, id, runFolder string) (*report.Trace, error) {
+	quiet := Options{Workers: 1, Progress: func(string, int64, int64) {}}
+	m, root, err := manifests.Load(path)
+	if err != nil {
+		return nil, err
+	}
+	defer root.Close()
+	s, sources, err := read(m, root, quiet)
+	if err != nil {
+		return nil, err
+	}
+	if _, err := s.judgeAnalyses(quiet, func(judged) error { return nil }); err != nil {
+		return nil, err
+	}
+	s.pairUp()
+	for i := range s.pairs {
+		s.makePair(i)
+	}
+	parts := strings.Split(id, "|")
+	if len(parts) < 2 {
+		return nil, fmt.Errorf("%s is no estimate_id; one reads <pair or analysis>|<method>|<component>, as in the estimates table", problem.Quote(id))
+	}
+	// A sample's name may hold the separator; a method's id and a component can't.
+	n := len(parts) - 1
+	component := ""
+	if thermo.ByID(parts[n]) == nil && parts[n] != discrepancy.AsPublished {
+		component, n = parts[n], n-1
+	}
+	t, err := s.trace(strings.Join(parts[:n], "|"), parts[n], component)
+	if err != nil {
+		return nil, err
+	}
+	t.EstimateID = id
+	for i := range t.Analyses {
+		if err := fillCells(&t.Analyses[i], root, m, sources); err != nil {
+			return nil, err
+		}
+	}
+	if runFolder == "" {
+		runFolder = filepath.Join("out", m.Compilation.ID)
+	}
+	t.Run, t.SameAsRun, err = compareWithRun(runFolder, t)
+	return t, err
+}
+
+// trace works the estimate of one method and component for one item.
+func (s *state) trace(itemID, methodID, component string) (*report.Trace, error) {
+	for _, k := range s.kinds() {
+		for i, it := range k.items {
+			if s.itemID(it) != itemID {
+				continue
+			}
+			if methodID == discrepancy.AsPublished {
+				return s.tracePublished(k, i)
+			}
+			for _, m := range k.methods {
+				if m.ID == methodID {
+					return s.traceMethod(k, i, m, component)
+				}
+			}
+		}
+	}
+	return nil, fmt.Errorf("this compilation has no estimate of %s for %s; ids are in the estimates table", problem.Quote(methodID), problem.Quote(itemID))
+}
+
+func (s *state) itemID(it item) string {
+	if it.pair >= 0 {
+		return s.pairID(int(it.pair))
+	}
+	b, row := s.all.At(int(it.a))
+	return b.Text(tables.AnalysisID, row)
+}
+
+func (s *state) traceMethod(all *kind, i int, m *method.Method, component string) (*report.Trace, error) {
+	lane := -1
+	for c, name := range m.Components {
+		if name == component {
+			lane = c
+		}
+	}
+	if lane < 0 {
+		return nil, fmt.Errorf("%s has no component %s; it has %s", m.ID, problem.Quote(component), strings.Join(m.Components, ", "))
+	}
+	k := &kind{name: all.name, roles: all.roles, items: all.items[i : i+1]}
+	k.prepare([]*method.Method{m})
+	e := s.newEvaluator(k)
+	r := e.evaluate(0, 1)
+	row := &r.rows[lane]
+	t := s.startTrace(k.items[0], row)
+	t.Equation, t.Ref, t.Basis = m.Equation, m.Ref, row.Fe3Basis
+	t.Constants = constants(m.Const)
+	for _, q := range e.block.Filled() {
+		t.Quantities = append(t.Quantities, report.Quantity{Name: q.Name, Unit: q.Unit,
+			Value: e.block.Of(q)[0], Why: e.block.Why(q)[0].String(), Leaf: q.Fill == nil})
+	}
+	return t, nil
+}
+
+func (s *state) tracePublished(k *kind, i int) (*report.Trace, error) {
+	it := k.items[i]
+	e := &evaluator{s: s, k: k}
+	var r result
+	e.emitPublished(&r, i)
+	if len(r.rows) == 0 {
+		return nil, fmt.Errorf("%s has no published temperature", problem.Quote(s.itemID(it)))
+	}
+	t := s.startTrace(it, &r.rows[0])
+	t.Equation = "the temperature as its source prints it"
+	return t, nil
+}
+
+func (s *state) startTrace(it item, row *tables.EstimateRow) *report.Trace {
+	t := &report.Trace{Method: row.Method, Component: row.Component, TC: row.TC, DTDP: row.DTDP, Reason: row.Reason,
+		PKbar: row.PKbar, PSource: row.PSource, Lineage: row.Lineage}
+	if it.pair >= 0 {
+		t.Pair = fmt.Sprintf("%s, rule %q, lineage %s", s.pairID(int(it.pair)), s.manifest.Pairing.Rule, s.pair[it.pair].lineage)
+	}
+	for _, x := range []int32{it.a, it.b} {
+		if x < 0 {
+			continue
+		}
+		b, r := s.all.At(int(x))
+		t.Analyses = append(t.Analyses, report.TracedAnalysis{ID: b.Text(tables.AnalysisID, r), Source: b.Source,
+			Line: b.Line(r), Phase: string(b.Phase(r)), Lineage: b.Lineage(r).String()})
+	}
+	return t
+}
+
+// fillCells reads the analysis' cells from its file again.
+func fillCells(a *report.TracedAnalysis, root *os.Root, m *manifests.Manifest, sources []ingest.Source) error {
+	for i := range m.Sources {
+		src := &m.Sources[i]
+		if src.ID != a.Source {
+			continue
+		}
+		_, cells, err := ingest.Cells(root, src, a.Line)
+		if err != nil {
+			return err
+		}
+		a.File = src.File
+		for _, c := range sources[i].Columns {
+			if c.Quantity == "" || c.Quantity == "ignored" || c.Position < 1 || c.Position > len(cells) {
+				continue
+			}
+			a.Cells = append(a.Cells, report.Cell{Column: c.Position, Header: c.Header, Quantity: c.Quantity, Text: cells[c.Position-1]})
+		}
+	}
+	return nil
+}
+
+// compareWithRun looks the estimate up in a result folder. found is "" where
+// there is no result to look in.
+func compareWithRun(dir string, t *report.Trace) (found string, same bool, err error) {
+	file := filepath.Join(dir, "tables", "estimates.parquet")
+	if _, err := os.Stat(file); err != nil {
+		return "", false, nil
+	}
+	rows, err := tables.Read[tables.EstimateRow](file)
+	if err != nil {
+		return "", false, err
+	}
+	for i := range rows {
+		if rows[i].EstimateID == t.EstimateID {
+			return filepath.ToSlash(dir), rows[i].Lineage == t.Lineage && equal(rows[i].TC, t.TC), nil
+		}
+	}
+	return filepath.ToSlash(dir), false, nil
+}
+
+func equal(a, b *float64) bool {
+	if a == nil || b == nil {
+		return a == b
+	}
+	return math.Float64bits(*a) == math.Float64bits(*b)
+}
+
+// constants lists what a method's Const holds, by field name.
+func constants(c any) []report.Constant {
+	var out []report.Constant
+	var walk func(name string, v reflect.Value)
+	walk = func(name string, v reflect.Value) {
+		switch v.Kind() {
+		case reflect.Pointer, reflect.Interface:
+			walk(name, v.Elem())
+		case reflect.Struct:
+			for i := range v.NumField() {
+				walk(strings.TrimPrefix(name+"."+v.Type().Field(i).Name, "."), v.Field(i))
+			}
+		case reflect.Slice, reflect.Array:
+			for i := range v.Len() {
+				walk(fmt.Sprintf("%s[%d]", name, i), v.Index(i))
+			}
+		case reflect.Invalid:
+		default:
+			out = append(out, report.Constant{Name: name, Value: fmt.Sprint(v)})
+		}
+	}
+	walk("", reflect.ValueOf(c))
+	return out
+}
