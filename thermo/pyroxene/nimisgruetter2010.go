@@ -39,7 +39,9 @@ var NimisGruetter2010 = func() *method.Method {
 					{Name: "P", Unit: "kbar", Min: 10, Max: 60},
 				},
 			},
-			Sigma:    method.Sigma{C: []float64{0}, Origin: "TBD"},
+			Sigma: method.Sigma{C: []float64{47},
+				Origin: "misfit (rms) on the 32 iron-free brackets of Carlson & Lindsley 1988 within the range, " +
+					"the brackets' own width included; no quoted value is remembered"},
 			Standing: method.Confirmed,
 		},
 		Const: k,
