@@ -101,3 +101,6 @@ func determined(c *chem.Composition, cation chem.Cation) bool {
 	}
 	return c.Determined(chem.MeasurandOf(chem.Cations[cation].Oxide))
 }
+
+// Determined says whether the source looked for the cation, iron in any form.
+func Determined(c *chem.Composition, cation chem.Cation) bool { return determined(c, cation) }
