@@ -8,6 +8,7 @@ import (
 	"fmt"
 	"hash"
 	"io"
+	"math"
 	"os"
 	"path/filepath"
 	"reflect"
@@ -15,7 +16,6 @@ import (
 	"unicode/utf8"
 
 	"github.com/parquet-go/parquet-go"
-	"github.com/parquet-go/parquet-go/compress/zstd"
 
 	"tieline/pipeline/lineage"
 	"tieline/pipeline/problem"
@@ -42,6 +42,11 @@ type Written struct {
 	// the columns' names, then every value in row and column order. It stays
 	// the same when the encoder of the file changes.
 	ContentSHA256 string `json:"content_sha256"`
+	// NonNull counts, per column, the rows that hold a value, for readers to
+	// check themselves against; so does TCMicroSum, the sum of
+	// round(t_c * 1e6) over a table with temperatures.
+	NonNull    map[string]int64 `json:"non_null"`
+	TCMicroSum *int64           `json:"t_c_micro_sum,omitempty"`
 }
 
 // Writer writes one table. It is for one goroutine.
@@ -79,7 +84,7 @@ func Create[T any](dir string, table string) (*Writer[T], error) {
 func options(table string, columns []column) []parquet.WriterOption {
 	o := []parquet.WriterOption{
 		&parquet.WriterConfig{CreatedBy: "tieline"}, // parquet.CreatedBy adds version and build
-		parquet.Compression(&zstd.Codec{Level: zstd.SpeedDefault, Concurrency: 1}),
+		parquet.Compression(newCodec()),
 		parquet.PageBufferSize(pageBytes),
 		parquet.MaxRowsPerRowGroup(rowGroupRows),
 		parquet.KeyValueMetadata("table", table),
@@ -157,7 +162,12 @@ func (w *Writer[T]) Close() (Written, error) {
 		return Written{}, w.err
 	}
 	content := w.content.encoder.Sum256()
+	nonNull := map[string]int64{}
+	for i, c := range w.content.columns {
+		nonNull[c.name] = w.content.nonNull[i]
+	}
 	return Written{
+		NonNull: nonNull, TCMicroSum: w.content.microSum,
 		Table: w.table, File: "tables/" + w.table + ".parquet", Rows: w.rows, Bytes: w.bytes,
 		SHA256: hex.EncodeToString(w.hash.Sum(nil)), ContentSHA256: hex.EncodeToString(content[:]),
 	}, nil
@@ -180,7 +190,10 @@ func explain(table string, err error) error {
 type content struct {
 	columns []column
 	places  []place // of each column
+	nonNull []int64 // of each column
 	encoder *lineage.Encoder
+
+	microSum *int64 // of t_c, nil where there is no such column
 }
 
 // place holds a nullable column's values, by row of the batch.
@@ -191,9 +204,13 @@ type place struct {
 }
 
 func newContent(table string, columns []column) content {
-	c := content{columns, make([]place, len(columns)), lineage.New("tieline table 1").Text(table).List(len(columns))}
+	c := content{columns: columns, places: make([]place, len(columns)), nonNull: make([]int64, len(columns)),
+		encoder: lineage.New("tieline table 1").Text(table).List(len(columns))}
 	for i, col := range columns {
 		c.encoder.Text(col.name)
+		if col.name == "t_c" {
+			c.microSum = new(int64)
+		}
 		switch {
 		case !col.nullable:
 		case col.kind == reflect.Float64:
@@ -214,18 +231,31 @@ func (c *content) add(row reflect.Value, at int) error {
 		switch v, col := row.Field(i), &c.columns[i]; {
 		case col.kind == reflect.String:
 			err = c.text(v.String(), col.nullable)
+			if !col.nullable || v.Len() > 0 {
+				c.nonNull[i]++
+			}
 		case !col.nullable:
 			err = c.plain(v)
+			c.nonNull[i]++
 		case v.IsNil():
 			c.encoder.Null()
 		default:
 			err = c.pointer(v, &c.places[i], at)
+			c.count(i, at)
 		}
 		if err != nil {
 			return fmt.Errorf("column %s: %w", c.columns[i].name, err)
 		}
 	}
 	return nil
+}
+
+// count notes a nullable number that is there.
+func (c *content) count(i, at int) {
+	c.nonNull[i]++
+	if c.columns[i].name == "t_c" {
+		*c.microSum += int64(math.Round(float64(c.places[i].floats[at] * 1e6)))
+	}
 }
 
 func (c *content) text(s string, nullable bool) error {
