@@ -16,9 +16,9 @@ var components = [3]string{"Ab", "Or", "An"}
 // The mole fractions of both feldspars, in the order of components.
 var (
 	inAfs = [3]*method.Quantity{
-		fraction(chem.Afs, 0, 0.1, 0.5), fraction(chem.Afs, 1, 0.45, 0.9), fraction(chem.Afs, 2, 0.005, 0.05)}
+		fraction(chem.Afs, 0, 0.15, 0.4), fraction(chem.Afs, 1, 0.55, 0.85), fraction(chem.Afs, 2, 0.005, 0.05)}
 	inPl = [3]*method.Quantity{
-		fraction(chem.Pl, 0, 0.1, 0.8), fraction(chem.Pl, 1, 0.02, 0.2), fraction(chem.Pl, 2, 0.05, 0.85)}
+		fraction(chem.Pl, 0, 0.45, 0.8), fraction(chem.Pl, 1, 0.03, 0.15), fraction(chem.Pl, 2, 0.1, 0.45)}
 	fractions = append(inAfs[:], inPl[:]...)
 )
 
@@ -41,6 +41,7 @@ var (
 func molecularRatio(c int) *method.Quantity {
 	return &method.Quantity{
 		Name:  "ln(X_Pl/X_Afs) of " + components[c],
+		Unit:  "1",
 		Needs: []*method.Quantity{inAfs[c], inPl[c]},
 		Fill: func(b *method.Block, q []float64, why []method.Reason) {
 			afs, pl := b.Of(inAfs[c]), b.Of(inPl[c])
@@ -59,6 +60,7 @@ func molecularRatio(c int) *method.Quantity {
 func avoidanceRatio(c int) *method.Quantity {
 	return &method.Quantity{
 		Name:  "ln(a_Pl/a_Afs) of " + components[c] + ", Al avoidance",
+		Unit:  "1",
 		Needs: []*method.Quantity{lnMolecular[c], avoidance(c)},
 		Fill: func(b *method.Block, q []float64, why []method.Reason) {
 			molecular, more := b.Of(lnMolecular[c]), b.Of(avoidance(c))
@@ -86,6 +88,7 @@ var (
 func anRatio(name string, times float64, of func(x float64) float64) *method.Quantity {
 	return &method.Quantity{
 		Name:  name,
+		Unit:  "1",
 		Needs: []*method.Quantity{inAfs[2], inPl[2]},
 		Fill: func(b *method.Block, q []float64, why []method.Reason) {
 			afs, pl := b.Of(inAfs[2]), b.Of(inPl[2])
@@ -127,6 +130,7 @@ func margulesTerm(c, m int) *method.Quantity {
 	}
 	return &method.Quantity{
 		Name:  "term of W_" + mixing.Names[m] + " in RT ln gamma of " + components[c] + ", Pl - Afs",
+		Unit:  "1",
 		Needs: fractions,
 		Fill: func(b *method.Block, q []float64, _ []method.Reason) {
 			a0, a1, a2 := b.Of(inAfs[x[0]]), b.Of(inAfs[x[1]]), b.Of(inAfs[x[2]])
