@@ -252,7 +252,8 @@ func (r *reader) phase(symbol chem.Phase, p string) {
 		known = append(known, string(k))
 	}
 	do := "see the phases listed in compilation.schema.json"
-	if near := Nearest(string(symbol), known); near != "" {
+	// Symbols are so short that two edits make any of any: Plag is not Lab.
+	if near := Nearest(string(symbol), known); near != "" && distance(strings.ToLower(string(symbol)), strings.ToLower(near)) <= 1 {
 		do = "did you mean " + problem.Quote(near) + "?"
 	}
 	r.complain(p, r.at[p], "phase", "an IMA symbol such as Afs, Pl, Opx, Cpx", problem.Quote(string(symbol)), do)

@@ -229,6 +229,7 @@ func TestProblems(t *testing.T) {
 		{"unknown quantity", `"Ca apfu",`, `"Ca apuf",`, "m.toml:31:42", []string{`did you mean "Ca apfu"?`}},
 		{"quantity of another kind", `"Ca apfu",`, `"CaO",`, "m.toml:31:42", []string{`"CaO", oxide wt%; expected a quantity of composition = "apfu"`}},
 		{"unknown phase", `phase = "Cpx"`, `phase = "cpx"`, "m.toml:18:9", []string{`did you mean "Cpx"?`}},
+		{"word for a phase", `phase = "Cpx"`, `phase = "Plag"`, "m.toml:18:9", []string{"see the phases listed in compilation.schema.json"}},
 		{"unknown phase of the map", `"K-spar" = "Afs"`, `"K-spar" = "Kspar"`, "m.toml:33:12", []string{"expected an IMA symbol"}},
 		{"word not on the list", `separator = "semicolon"`, `separator = ";"`, "m.toml:13:13", []string{`";"; expected "comma", "tab" or "semicolon"`}},
 		{"empty word", `decimal = "comma"`, `decimal = ""`, "m.toml:14:11", []string{`expected "point" or "comma"`}},
