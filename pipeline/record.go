@@ -1,6 +1,7 @@
 package pipeline
 
 import (
+	"bytes"
 	"encoding/json"
 	"fmt"
 
@@ -88,6 +89,10 @@ func (s *state) recordMethods() []RecordMethod {
 
 // Encode gives the record as it is written to record.json.
 func (r *Record) Encode() ([]byte, error) {
-	b, err := json.MarshalIndent(r, "", "  ")
-	return append(b, '\n'), err
+	var b bytes.Buffer
+	e := json.NewEncoder(&b)
+	e.SetEscapeHTML(false)
+	e.SetIndent("", "  ")
+	err := e.Encode(r)
+	return b.Bytes(), err
 }

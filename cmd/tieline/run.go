@@ -31,10 +31,14 @@ whole or not at all. A result that is there from an earlier run is replaced.`,
 			}
 			fmt.Fprint(cmd.ErrOrStderr(), r.Summary.Text())
 			fmt.Fprintf(cmd.ErrOrStderr(), "\nThe result is in %s: tables/*.parquet, record.json, run.log\n", r.Folder)
-			if asJSON {
-				return printJSON(cmd.OutOrStdout(), r.Record)
+			if !asJSON {
+				return nil
 			}
-			return nil
+			text, err := r.Record.Encode()
+			if err == nil {
+				_, err = cmd.OutOrStdout().Write(text)
+			}
+			return err
 		}),
 	}
 	cmd.Flags().StringVar(&out, "out", "", "result folder, instead of out/<compilation>")

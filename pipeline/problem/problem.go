@@ -132,16 +132,19 @@ const maxRunes = 80
 
 // Quote shows cell text safely: quoted, control and bidirectional characters
 // escaped, at most 80 runes.
-func Quote(s string) string { return `"` + escape(s, true) + `"` }
+func Quote(s string) string { return `"` + escape(s, true, maxRunes) + `"` }
 
 // Clean is Quote without the quotes, for names in running text.
-func Clean(s string) string { return escape(s, false) }
+func Clean(s string) string { return escape(s, false, maxRunes) }
 
-func escape(s string, quotes bool) string {
+// CleanAll is Clean at full length, for what a manifest says of itself.
+func CleanAll(s string) string { return escape(s, false, len(s)) }
+
+func escape(s string, quotes bool, limit int) string {
 	var b strings.Builder
 	n := 0
 	for _, r := range s {
-		if n == maxRunes {
+		if n == limit {
 			b.WriteString("…")
 			break
 		}

@@ -57,7 +57,7 @@ type Row struct{ ID, Why string }
 // Text is the summary as people read it, at most about 100 columns wide.
 func (s *Summary) Text() string {
 	var b strings.Builder
-	fmt.Fprintf(&b, "%s\n", problem.Clean(s.Title))
+	wrap(&b, "", "", problem.CleanAll(s.Title))
 	s.sources(&b)
 	s.temperatures(&b)
 	s.discrepancies(&b)
@@ -104,7 +104,7 @@ func (s *Summary) temperatures(b *strings.Builder) {
 		if t.SigmaC > 0 {
 			sigma = fmt.Sprintf("%.0f", t.SigmaC)
 		}
-		name := name(t.Method, t.Component)
+		name := name(t.PairKind, t.Method, t.Component)
 		if t.N == 0 {
 			fmt.Fprintf(b, "    %-40s %6d\n", name, 0)
 			continue
@@ -116,26 +116,53 @@ func (s *Summary) temperatures(b *strings.Builder) {
 	}
 }
 
-func name(method, component string) string {
+// name is a method and component as they stand under the heading of a pair
+// kind: the kind is not said again.
+func name(kind, method, component string) string {
+	method = strings.TrimPrefix(method, kind+"/")
 	if component == "" {
 		return method
 	}
 	return method + " " + component
 }
 
+// discrepancies lists the comparisons that say something at a glance: a method's
+// components with each other, one component by two methods, and everything with
+// the published temperatures. The table holds them all.
 func (s *Summary) discrepancies(b *strings.Builder) {
 	if len(s.Discrepancies) == 0 {
 		return
 	}
-	b.WriteString("\nWhere calibrations disagree, a minus b, degC (all rows together)\n")
-	fmt.Fprintf(b, "  %-76s %5s %7s %7s\n", "a - b", "n", "median", "SD")
-	for _, d := range s.Discrepancies {
+	b.WriteString("\nWhere calibrations disagree, a minus b, degC, over all rows\n")
+	kind, left := "", 0
+	for i := range s.Discrepancies {
+		d := &s.Discrepancies[i]
+		if d.MethodA != d.MethodB && d.ComponentA != d.ComponentB && d.ComponentA != "" && d.ComponentB != "" {
+			left++
+			continue
+		}
+		if d.PairKind != kind {
+			kind = d.PairKind
+			fmt.Fprintf(b, "  %-60s %6s %8s %8s %8s\n", kind, "n", "samples", "median", "SD")
+		}
 		sd := ""
 		if d.SDC != nil {
 			sd = fmt.Sprintf("%.0f", *d.SDC)
 		}
-		fmt.Fprintf(b, "  %-76s %5d %+7.0f %7s\n", name(d.MethodA, d.ComponentA)+" - "+name(d.MethodB, d.ComponentB), d.N, *d.MedianDiffC, sd)
+		pair := name(kind, d.MethodA, d.ComponentA) + " - " + name(kind, d.MethodB, d.ComponentB)
+		fmt.Fprintf(b, "    %-58s %6d %8d %8s %8s\n", pair, d.N, d.NSamples, signed(*d.MedianDiffC), sd)
 	}
+	if left > 0 {
+		fmt.Fprintf(b, "  %d comparisons across components are in tables/discrepancies.parquet\n", left)
+	}
+}
+
+// signed prints a difference to the degree, with its sign, and 0 without one.
+func signed(v float64) string {
+	if s := fmt.Sprintf("%+.0f", v); s != "-0" && s != "+0" {
+		return s
+	}
+	return "0"
 }
 
 func (s *Summary) quality(b *strings.Builder) {
