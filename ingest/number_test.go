@@ -21,7 +21,7 @@ func TestParseNumber(t *testing.T) {
 		{strings.Repeat("9", 100) + ",5", ',', 1e100},
 	} {
 		got, fault := parseNumber(c.cell, c.mark)
-		if fault != noFault || got != c.want {
+		if fault != readable || got != c.want {
 			t.Errorf("parseNumber(%q, %q) = %v, fault %d; want %v", c.cell, c.mark, got, fault, c.want)
 		}
 	}
@@ -31,17 +31,17 @@ func TestParseNumberRefuses(t *testing.T) {
 	for _, c := range []struct {
 		cell string
 		mark byte
-		want numberFault
+		want cellFault
 	}{
-		{"", '.', notNumber}, {".", '.', notNumber}, {"-", '.', notNumber}, {"+.", '.', notNumber}, {"e5", '.', notNumber},
-		{"1e", '.', notNumber}, {"1e+", '.', notNumber}, {"1_000", '.', notNumber}, {"0x1p-2", '.', notNumber},
-		{"0x10", '.', notNumber}, {"inf", '.', notNumber}, {"+Inf", '.', notNumber}, {"Infinity", '.', notNumber},
-		{"nan", '.', notNumber}, {"NaN", '.', notNumber}, {"1 000", '.', notNumber}, {"1,000", '.', notNumber},
-		{"1.000,5", ',', notNumber}, {"1.5", ',', notNumber}, {"12,3", '.', notNumber}, {"1.2.3", '.', notNumber},
-		{" 1", '.', notNumber}, {"1 ", '.', notNumber}, {"--1", '.', notNumber}, {"1-", '.', notNumber},
-		{"\u20131", '.', notNumber}, {"1\u00b2", '.', notNumber}, {"\u0661", '.', notNumber}, {"\uff11", '.', notNumber},
-		{"1'000", '.', notNumber}, {"1.5*", '.', notNumber}, {"1e5.0", '.', notNumber}, {"\xe2\x88", '.', notNumber},
-		{"1e309", '.', tooLarge}, {"-1e309", '.', tooLarge}, {"1e-400", '.', tooSmall}, {"0,1e-400", ',', tooSmall},
+		{"", '.', wordy}, {".", '.', wordy}, {"-", '.', wordy}, {"+.", '.', wordy}, {"e5", '.', wordy},
+		{"1e", '.', wordy}, {"1e+", '.', wordy}, {"1_000", '.', wordy}, {"0x1p-2", '.', wordy},
+		{"0x10", '.', wordy}, {"inf", '.', wordy}, {"+Inf", '.', wordy}, {"Infinity", '.', wordy},
+		{"nan", '.', wordy}, {"NaN", '.', wordy}, {"1 000", '.', wordy}, {"1,000", '.', wordy},
+		{"1.000,5", ',', wordy}, {"1.5", ',', wordy}, {"12,3", '.', wordy}, {"1.2.3", '.', wordy},
+		{" 1", '.', wordy}, {"1 ", '.', wordy}, {"--1", '.', wordy}, {"1-", '.', wordy},
+		{"\u20131", '.', wordy}, {"1\u00b2", '.', wordy}, {"\u0661", '.', wordy}, {"\uff11", '.', wordy},
+		{"1'000", '.', wordy}, {"1.5*", '.', wordy}, {"1e5.0", '.', wordy}, {"\xe2\x88", '.', wordy},
+		{"1e309", '.', overflow}, {"-1e309", '.', overflow}, {"1e-400", '.', underflow}, {"0,1e-400", ',', underflow},
 	} {
 		if got, fault := parseNumber(c.cell, c.mark); fault != c.want || got != 0 {
 			t.Errorf("parseNumber(%q, %q) = %v, fault %d; want fault %d", c.cell, c.mark, got, fault, c.want)
@@ -67,15 +67,15 @@ func FuzzNumber(f *testing.F) {
 		want, err := strconv.ParseFloat(text, 64)
 		plain := strings.Trim(cell, "+-0123456789eE"+minus+string(mark)) == "" && strings.IndexByte(cell, other) < 0
 		switch {
-		case fault == noFault && (err != nil || got != want || math.Signbit(got) && got == 0):
+		case fault == readable && (err != nil || got != want || math.Signbit(got) && got == 0):
 			t.Errorf("parseNumber(%q, %q) = %v, ParseFloat(%q) = %v, %v", cell, mark, got, text, want, err)
-		case fault == noFault && !plain:
+		case fault == readable && !plain:
 			t.Errorf("parseNumber(%q, %q) = %v, and the cell has characters no number has", cell, mark, got)
-		case fault == tooLarge && (err == nil || !math.IsInf(want, 0)):
+		case fault == overflow && (err == nil || !math.IsInf(want, 0)):
 			t.Errorf("parseNumber(%q, %q) says too large, ParseFloat(%q) = %v, %v", cell, mark, text, want, err)
-		case fault == tooSmall && (err != nil || want != 0):
+		case fault == underflow && (err != nil || want != 0):
 			t.Errorf("parseNumber(%q, %q) says too small, ParseFloat(%q) = %v, %v", cell, mark, text, want, err)
-		case fault == notNumber && err == nil && plain:
+		case fault == wordy && err == nil && plain:
 			t.Errorf("parseNumber(%q, %q) refuses what ParseFloat reads as %v", cell, mark, want)
 		}
 	})

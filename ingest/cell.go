@@ -1,0 +1,205 @@
+package ingest
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"tieline/manifests"
+	"tieline/pipeline/problem"
+	"tieline/pipeline/tables"
+	"tieline/thermo/chem"
+)
+
+// cells reads the cells of one source.
+type cells struct {
+	mark    byte // decimal
+	markers map[string]chem.State
+	first   [256]bool // bytes a marker may begin with
+	longest int       // marker, bytes
+}
+
+func newCells(s *manifests.Source) *cells {
+	c := &cells{mark: '.', markers: map[string]chem.State{}}
+	if s.Decimal == "comma" {
+		c.mark = ','
+	}
+	for _, list := range []struct {
+		texts []string
+		state chem.State
+	}{{s.Missing, chem.Missing}, {s.NotAnalysed, chem.NotAnalysed}, {s.BelowDetection, chem.BelowDetection}} {
+		for _, text := range list.texts {
+			c.marker(strings.ToLower(trim(text)), list.state)
+		}
+	}
+	for b := 0x80; b <= 0xff; b++ { // a letter may shrink to ASCII when made small
+		c.first[b] = true
+	}
+	return c
+}
+
+func (c *cells) marker(text string, state chem.State) {
+	if text == "" { // an empty cell is missing in every source
+		return
+	}
+	c.markers[text] = state
+	c.longest = max(c.longest, len(text))
+	c.first[text[0]] = true
+	c.first[strings.ToUpper(text[:1])[0]] = true
+}
+
+// marked says what a cell says in words: missing, not analysed, below detection.
+func (c *cells) marked(cell string) (chem.State, bool) {
+	if cell == "" {
+		return chem.Missing, true
+	}
+	// A few letters are longer when small, none more than twice.
+	if !c.first[cell[0]] || len(cell) > 2*c.longest {
+		return 0, false
+	}
+	state, ok := c.markers[strings.ToLower(cell)]
+	return state, ok
+}
+
+// reading is what a number cell says. fault is why it says nothing.
+type reading struct {
+	value float64 // or the detection limit, 0 where none is stated
+	state chem.State
+	fault cellFault
+}
+
+// number reads a trimmed cell of the composition. Below zero is read as it
+// stands: a background above the peak makes small negative amounts, and whether
+// to use them is not for the reader to say.
+func (c *cells) number(cell string) reading {
+	if state, ok := c.marked(cell); ok {
+		return reading{state: state}
+	}
+	if cell[0] == '<' {
+		limit, fault := parseNumber(trim(cell[1:]), c.mark)
+		if fault != readable || limit < 0 {
+			return reading{fault: limitUnread}
+		}
+		return reading{value: limit, state: chem.BelowDetection}
+	}
+	x, fault := parseNumber(cell, c.mark)
+	if fault != readable {
+		return reading{fault: fault}
+	}
+	return reading{value: x, state: chem.Measured}
+}
+
+// sigma reads a 1-sigma. A word for not analysed or below detection says that
+// there is none.
+func (c *cells) sigma(cell string) reading { return check(c.measured(cell), 0, negative) }
+
+// measured reads a number that has no detection limit.
+func (c *cells) measured(cell string) reading {
+	r := c.number(cell)
+	if cell != "" && cell[0] == '<' && r.state == chem.BelowDetection {
+		if _, word := c.marked(cell); !word {
+			return reading{fault: limitRefused}
+		}
+	}
+	return r
+}
+
+// plain reads a number beside the composition, in the unit of the tables.
+func (c *cells) plain(cell string, u *use) reading {
+	r := c.measured(cell)
+	r.value = u.scale.apply(r.value)
+	if math.IsInf(r.value, 0) {
+		return reading{fault: overflow}
+	}
+	switch u.number {
+	case tables.PublishedC:
+		return check(r, float64(-chem.ZeroCelsius), tooCold)
+	case tables.PublishedSigmaC, tables.PublishedPKbar, tables.PKbar, tables.PSigmaKbar:
+		return check(r, 0, negative)
+	case tables.NSpots:
+		if r.state == chem.Measured && !whole(r.value) {
+			return reading{fault: notCount}
+		}
+	}
+	return r
+}
+
+// check refuses a number below the least that makes sense.
+func check(r reading, least float64, fault cellFault) reading {
+	if r.state == chem.Measured && r.value < least {
+		return reading{fault: fault}
+	}
+	return r
+}
+
+func (s scale) apply(x float64) float64 {
+	switch s {
+	case kelvinToCelsius:
+		return float64(chem.Kelvin(x).Celsius())
+	case gpaToKbar:
+		return float64(x * 10)
+	case mpaToKbar:
+		return x / 100
+	case barToKbar:
+		return x / 1000
+	}
+	return x
+}
+
+// problem says what is wrong with a cell and what to do about it.
+func (c *cells) problem(cell string, fault cellFault) problem.Problem {
+	p := problem.Problem{Kind: "number", Found: problem.Quote(cell), Expected: "a number with a decimal " + c.markName()}
+	switch fault {
+	case wordy:
+		p.Found += " is no number"
+		p.Do = c.advice(cell)
+	case overflow:
+		p.Found += " is too large"
+		p.Expected = "a number below 1.8e308"
+	case underflow:
+		p.Found += " is too small to tell from 0"
+		p.Expected = "a number, or 0"
+	case limitUnread:
+		p.Found += " has no limit after the <"
+		p.Expected = "a limit such as <0" + string(c.mark) + "02"
+	case limitRefused:
+		p.Found += " is a limit"
+		p.Do = "leave the cell empty if there is no number"
+	case negative:
+		p.Found += " is below zero"
+		p.Expected = "a number of 0 or more"
+	case tooCold:
+		p.Found += " is below absolute zero"
+		p.Expected = "a temperature"
+		p.Do = "list the text in missing if it means that there is none"
+	case notCount:
+		p.Found += " is no count"
+		p.Expected = "a whole number of 1 or more"
+	}
+	return p
+}
+
+func (c *cells) markName() string {
+	if c.mark == ',' {
+		return "comma"
+	}
+	return "point"
+}
+
+// advice guesses why a cell is no number.
+func (c *cells) advice(cell string) string {
+	other, name := byte(','), "comma"
+	if c.mark == ',' {
+		other, name = '.', "point"
+	}
+	_, asOther := parseNumber(cell, other)
+	switch {
+	case asOther == readable:
+		return fmt.Sprintf("set decimal = %q if this source writes its decimals so", name)
+	case !strings.ContainsAny(cell, "0123456789"):
+		return "list the text in not_analysed, below_detection or missing if it means one of these"
+	case strings.IndexByte(cell, c.mark) >= 0 && strings.ContainsAny(cell, ",. '"):
+		return "write numbers without thousands separators or spaces"
+	}
+	return "correct the cell"
+}
