@@ -39,10 +39,12 @@ const (
 
 // Folder is a result being written. One goroutine uses it.
 type Folder struct {
-	target string
+	name   string // as the user gave it
+	target string // the same, absolute
 	policy Policy
 	lock   *flock.Flock
 	made   []string // parents that were missing, innermost last
+	staged bool     // the staging folder there is ours
 	done   bool
 
 	exchange func(a, b string) error
@@ -59,7 +61,7 @@ func Open(target string, replace Policy) (*Folder, error) {
 	if filepath.Dir(path) == path {
 		return nil, fmt.Errorf("result folder %s: this is the root of the file system; name a folder in it", target)
 	}
-	f := &Folder{target: path, policy: replace, exchange: exchange}
+	f := &Folder{name: target, target: path, policy: replace, exchange: exchange}
 	if err := f.takeLock(); err != nil {
 		f.removeParents()
 		return nil, fmt.Errorf("result folder %s: %w", target, err)
@@ -87,7 +89,13 @@ func (f *Folder) stage() error {
 	if err := os.Mkdir(f.staging(), 0o777); err != nil {
 		return err
 	}
-	if err := os.WriteFile(filepath.Join(f.staging(), markName), []byte(markText), 0o666); err != nil {
+	f.staged = true
+	mark := filepath.Join(f.staging(), markName)
+	if err := os.WriteFile(mark, []byte(markText), 0o666); err != nil {
+		return err
+	}
+	// The mark must outlast a power cut that the rest outlasts.
+	if err := errors.Join(syncFile(mark), syncFolder(f.staging())); err != nil {
 		return err
 	}
 	return os.Mkdir(f.Path(), 0o777)
@@ -213,7 +221,7 @@ func (f *Folder) Commit() error {
 	}
 	for _, step := range []func() error{f.allowed, func() error { return syncTree(f.Path()) }, f.place} {
 		if err := step(); err != nil {
-			return fmt.Errorf("result folder %s: %w", f.target, err)
+			return fmt.Errorf("result folder %s: %w", f.name, err)
 		}
 	}
 	syncFolder(filepath.Dir(f.target)) // the result is in place and whole whatever this says
@@ -272,10 +280,8 @@ func (f *Folder) Abandon() {
 		return
 	}
 	f.done = true
-	if text, err := readRegular(filepath.Join(f.staging(), markName)); err == nil && string(text) == markText {
+	if f.staged {
 		f.removeStaging()
-	} else {
-		os.Remove(f.staging()) // unmarked: only if empty
 	}
 	f.releaseLock()
 	f.removeParents()

@@ -18,15 +18,20 @@ const lockTries = 100
 // system lets go of the lock of a killed run. A run removes its lock file when
 // it is done, so a lock only counts while its file still has the name.
 func (f *Folder) takeLock() error {
+	var err error
 	for range lockTries {
 		if err := f.makeParents(); err != nil {
 			return fmt.Errorf("%w; name another folder with --out", err)
 		}
+		if info, err := os.Lstat(f.beside(".lock")); err == nil && !info.Mode().IsRegular() {
+			return fmt.Errorf("%s is in the way and is no lock of tieline; move or remove it", f.beside(".lock"))
+		}
 		lock := flock.New(f.beside(".lock"))
-		got, err := lock.TryLock()
+		var got bool
+		got, err = lock.TryLock()
 		switch {
 		case errors.Is(err, fs.ErrNotExist):
-			continue
+			continue // a parent was removed, or this file system takes no files
 		case err != nil:
 			return fmt.Errorf("cannot write beside it: %w; name another folder with --out", err)
 		case !got:
@@ -38,7 +43,10 @@ func (f *Folder) takeLock() error {
 		}
 		lock.Unlock()
 	}
-	return fmt.Errorf("cannot lock %s: it vanishes again and again", f.beside(".lock"))
+	if err == nil {
+		err = errors.New("other runs come and go all the time")
+	}
+	return fmt.Errorf("cannot lock %s: %w; name another folder with --out", f.beside(".lock"), err)
 }
 
 // named says whether the locked file is still the one of this name.
