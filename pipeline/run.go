@@ -4,6 +4,7 @@ package pipeline
 
 import (
 	"errors"
+	"fmt"
 	"os"
 	"path/filepath"
 	"runtime"
@@ -146,10 +147,12 @@ func read(m *manifests.Manifest, root *os.Root, opt Options) (*state, []ingest.S
 	if problems == nil {
 		problems = &problem.List{}
 	}
-	for _, id := range unknown {
-		problems.Add(problem.Problem{Source: manifests.FileName, Name: "methods.use", Kind: "method",
-			Found: "no method is called " + problem.Quote(id), Expected: "an id that `tieline methods` lists",
-			Do: nearestMethod(id)})
+	for _, i := range unknown {
+		key := fmt.Sprintf("methods.use[%d]", i)
+		line, column := m.At(key)
+		problems.Add(problem.Problem{Source: manifests.FileName, Line: line, Column: column, Name: key, Kind: "method",
+			Found: "no method is called " + problem.Quote(m.Methods.Use[i]), Expected: "an id that `tieline methods` lists",
+			Do: nearestMethod(m.Methods.Use[i])})
 	}
 	if problems.Len() == 0 && all.Len() == 0 {
 		problems.Add(problem.Problem{Source: manifests.FileName, Kind: "empty", Found: "the sources hold no analysis", Expected: "at least one row"})

@@ -84,12 +84,12 @@ func newState(m *manifests.Manifest, methods []*method.Method) *state {
 }
 
 // chosen gives the methods a manifest asks for, in the order of the list, and
-// the ids it names that there are none of.
-func chosen(m *manifests.Manifest) (methods []*method.Method, unknown []string) {
+// the places in methods.use of ids that there are none of.
+func chosen(m *manifests.Manifest) (methods []*method.Method, unknown []int) {
 	named := map[string]bool{}
-	for _, id := range m.Methods.Use {
+	for i, id := range m.Methods.Use {
 		if thermo.ByID(id) == nil {
-			unknown = append(unknown, id)
+			unknown = append(unknown, i)
 		}
 		named[id] = true
 	}
