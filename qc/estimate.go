@@ -29,7 +29,7 @@ func OfEstimate(e *Estimate) []Finding {
 	for i, b := range e.OutOf {
 		out = append(out, Finding{Rule: "outside calibrated range", Effect: Flagged, Value: number(e.OutOfValue[i]),
 			Limit:  fmt.Sprintf("%s to %s %s", text(b.Min, 4), text(b.Max, 4), b.Unit),
-			Detail: fmt.Sprintf("%s %s %s is outside the calibrated %s to %s", b.Name, text(e.OutOfValue[i], 4), b.Unit, text(b.Min, 4), text(b.Max, 4))})
+			Detail: fmt.Sprintf("%s %s is outside the calibrated %s to %s %s", b.Name, text(e.OutOfValue[i], 4), text(b.Min, 4), text(b.Max, 4), b.Unit)})
 	}
 	if e.Assumed {
 		out = append(out, Finding{Rule: "assumed pressure", Effect: Flagged, Value: number(e.PKbar), Limit: "stated by the source",
