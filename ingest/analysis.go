@@ -51,7 +51,7 @@ func (a *analyses) read(row []string, r *rows) *tables.Analysis {
 			p.Line, p.Column, p.Name = r.lineOf(c.at), c.at+1, c.header
 		}
 	}
-	a.sampleGiven(r)
+	a.sampleGiven(row, r)
 	if len(a.problems) > 0 {
 		return nil
 	}
@@ -166,14 +166,17 @@ func (a *analyses) accept(c *column, cell string, r reading) reading {
 
 // sampleGiven reports a row whose sample cell is empty. A row that is passed
 // over needs none.
-func (a *analyses) sampleGiven(r *rows) {
+func (a *analyses) sampleGiven(row []string, r *rows) {
 	if !a.plan.hasSample || a.one.Text[tables.Sample] != "" || a.one.Text[tables.SetAside] != "" {
 		return
 	}
-	p := problem.Problem{Line: r.line, Kind: "sample", Found: "no sample name", Expected: "the name of the rock or run", Do: "fill in the cell"}
+	p := problem.Problem{Kind: "sample", Found: "no sample name", Expected: "the name of the rock or run", Do: "fill in the cell"}
 	for _, c := range a.plan.columns {
 		if c.quantity == manifests.Sample {
 			p.Line, p.Column, p.Name = r.lineOf(c.at), c.at+1, c.header
+			if cell := trim(row[c.at]); cell != "" {
+				p.Found = problem.Quote(cell) + " is no sample name"
+			}
 		}
 	}
 	a.problems = append(a.problems, p)

@@ -193,13 +193,19 @@ func (c *cells) advice(cell string) string {
 		other, name = '.', "point"
 	}
 	_, asOther := parseNumber(cell, other)
+	_, together := parseNumber(strings.Map(func(r rune) rune {
+		if blank(r) || r == rune(other) || r == '\'' || r == '\u2019' {
+			return -1
+		}
+		return r
+	}, cell), c.mark)
 	switch {
 	case asOther == readable:
 		return fmt.Sprintf("set decimal = %q if this source writes its decimals so", name)
+	case together == readable:
+		return "write numbers without thousands separators or spaces"
 	case !strings.ContainsAny(cell, "0123456789"):
 		return "list the text in not_analysed, below_detection or missing if it means one of these"
-	case strings.IndexByte(cell, c.mark) >= 0 && strings.ContainsAny(cell, ",. '"):
-		return "write numbers without thousands separators or spaces"
 	}
 	return "correct the cell"
 }

@@ -40,7 +40,12 @@ type guard struct {
 	bytes     int64
 	last      byte
 	suspect   bool // something may be no UTF-8, NUL, or not have decoded
+
+	start []byte // of the text, to try another separator on
 }
+
+// startBytes is how much of the text is kept as its start: a header, mostly.
+const startBytes = 16 << 10
 
 // lineEnd says how the file ends its lines, which its first line shows.
 type lineEnd uint8
@@ -105,6 +110,7 @@ func (g *guard) check(text []byte) {
 		return
 	}
 	g.endLines(text)
+	g.start = append(g.start, text[:min(len(text), startBytes-len(g.start))]...)
 	g.suspect = g.suspect || g.odd(text)
 	near := g.cell+len(text) > maxCell || g.row+len(text) > maxRow
 	if g.unquoted() && !near && bytes.IndexByte(text, '"') < 0 {

@@ -1,7 +1,9 @@
 package ingest
 
 import (
+	"bytes"
 	"cmp"
+	"encoding/csv"
 	"fmt"
 	"slices"
 	"strings"
@@ -130,8 +132,9 @@ type header struct {
 	declared bool // the manifest maps it
 }
 
-// newPlan reads the header row. fatal says that no row is worth reading.
-func newPlan(s *manifests.Source, cells []string, line int) (p *plan, problems []problem.Problem, fatal bool) {
+// newPlan reads the header row; start is the text's. fatal says that no row is
+// worth reading.
+func newPlan(s *manifests.Source, cells []string, line int, start []byte) (p *plan, problems []problem.Problem, fatal bool) {
 	p = &plan{source: s, kind: s.Kind(), phases: newPhaseReader(s)}
 	h := &headerReader{plan: p, line: line}
 	headers := h.read(cells)
@@ -140,7 +143,7 @@ func newPlan(s *manifests.Source, cells []string, line int) (p *plan, problems [
 	h.use(headers)
 	h.foreignUnits(headers)
 	h.constants(headers)
-	fatal = h.needed(cells)
+	fatal = h.needed(cells, start)
 	p.seal()
 	return p, h.problems, fatal
 }
@@ -241,8 +244,7 @@ func (h *headerReader) use(headers []header) {
 		key.scale = asGiven // kbar and GPa are one pressure
 		if before, twice := taken[key]; twice {
 			if before.text != one.text {
-				h.problem(one, problem.Problem{Found: fmt.Sprintf("%s in column %d and %s in column %d both give %s", problem.Quote(before.shown), before.at+1, problem.Quote(one.shown), one.at+1, q),
-					Expected: "one column for it", Do: `map the other to "ignored" in columns`})
+				h.twice(before, one)
 			}
 			continue
 		}
@@ -250,6 +252,15 @@ func (h *headerReader) use(headers []header) {
 		p.columns = append(p.columns, column{at: one.at, header: one.shown, quantity: q, use: u, report: len(p.reports) - 1})
 	}
 	slices.SortFunc(p.columns, func(a, b column) int { return cmp.Compare(a.quantity, b.quantity) })
+}
+
+func (h *headerReader) twice(a, b *header) {
+	what := a.meaning.quantity.String()
+	if a.meaning.quantity != b.meaning.quantity {
+		what = fmt.Sprintf("one thing, %s and %s", what, b.meaning.quantity)
+	}
+	h.problem(b, problem.Problem{Expected: "one column for it", Do: `map the other to "ignored" in columns`,
+		Found: fmt.Sprintf("%s in column %d and %s in column %d both give %s", problem.Quote(a.shown), a.at+1, problem.Quote(b.shown), b.at+1, what)})
 }
 
 // foreignUnits refuses composition columns in another unit than the source's.
@@ -285,9 +296,9 @@ func (h *headerReader) constants(headers []header) {
 
 // needed finds what no source can do without. Without a composition the header
 // is no header, most likely for a wrong separator.
-func (h *headerReader) needed(cells []string) (fatal bool) {
+func (h *headerReader) needed(cells []string, start []byte) (fatal bool) {
 	if !slices.ContainsFunc(h.plan.columns, func(c column) bool { return c.use.role == valueCell }) {
-		h.noComposition(cells)
+		h.noComposition(cells, start)
 		return true
 	}
 	if !h.plan.hasSample {
@@ -301,14 +312,16 @@ func (h *headerReader) needed(cells []string) (fatal bool) {
 	return false
 }
 
-func (h *headerReader) noComposition(cells []string) {
+func (h *headerReader) noComposition(cells []string, start []byte) {
 	p := problem.Problem{Found: "no column is known to hold " + h.plan.kind.String(), Expected: "headers such as " + examples[h.plan.kind],
-		Do: "map the columns in columns, or correct composition"}
+		Do: "map the headers in columns"}
 	if len(cells) == 1 {
 		p.Found = "one column only, " + problem.Quote(cells[0])
 	}
-	if other, n := h.betterSeparator(cells); other != "" {
+	if other, n := betterSeparator(h.plan.source, start, known(h.plan.kind, cells)); other != "" {
 		p.Kind, p.Do = "separator", fmt.Sprintf("set separator = %q, which gives %d columns", other, n)
+	} else if kind, ok := betterKind(cells); ok {
+		p.Do = fmt.Sprintf("set composition = %q", kind)
 	}
 	h.problem(nil, p)
 }
@@ -317,32 +330,49 @@ var examples = [...]string{
 	chem.OxideWt: `"SiO2", "Al2O3 (wt%)", "FeO*"`, chem.Apfu: `"Si", "Al apfu", "Fe3+"`, chem.EndMember: `"Ab", "XOr", "An"`,
 }
 
-// betterSeparator names the separator that would make of this header one with a
-// known composition, or at least more than one column.
-func (h *headerReader) betterSeparator(cells []string) (separator string, columns int) {
-	v := vocabularyOf[h.plan.kind]()
-	line := strings.Join(cells, string(h.plan.source.Comma()))
-	best := 0
+// known counts the headers that hold a composition of a kind.
+func known(kind chem.Kind, headers []string) int {
+	v, n := vocabularyOf[kind](), 0
+	for _, h := range headers {
+		if _, _, ok := v.look(h).quantity.Measurand(); ok {
+			n++
+		}
+	}
+	return n
+}
+
+// betterKind is the kind of composition most of the headers hold.
+func betterKind(headers []string) (best chem.Kind, ok bool) {
+	most := 0
+	for kind := range chem.EndMember + 1 {
+		if n := known(kind, headers); n > most {
+			most, best, ok = n, kind, true
+		}
+	}
+	return best, ok
+}
+
+// betterSeparator names the separator that would make of the start of a text a
+// header with more columns that are known to hold a composition.
+func betterSeparator(s *manifests.Source, start []byte, have int) (separator string, columns int) {
+	most := have
 	for _, other := range []string{"comma", "tab", "semicolon"} {
-		if other == h.plan.source.Separator {
-			continue
-		}
 		trial := manifests.Source{Separator: other}
-		parts := strings.Split(line, string(trial.Comma()))
-		score := 0
-		for _, part := range parts {
-			if _, _, ok := v.look(part).quantity.Measurand(); ok {
-				score += len(parts) // a known column outweighs any number of unknown ones
-			}
-		}
-		if len(cells) == 1 {
-			score += len(parts) - 1
-		}
-		if score > best {
-			best, separator, columns = score, other, len(parts)
+		cells := firstRow(start, trial.Comma())
+		n := known(s.Kind(), cells)
+		if other != s.Separator && len(cells) > 1 && n > most {
+			most, separator, columns = n, other, len(cells)
 		}
 	}
 	return separator, columns
+}
+
+// firstRow splits the first row of a text that may be cut off.
+func firstRow(text []byte, comma rune) []string {
+	r := csv.NewReader(bytes.NewReader(text))
+	r.Comma, r.LazyQuotes = comma, true
+	cells, _ := r.Read()
+	return cells
 }
 
 // note says why a column is not used though its header looks known.

@@ -112,12 +112,15 @@ func (r *reader) header(rows *rows) *plan {
 		r.stop(err)
 		return nil
 	case p != nil:
+		if other, n := betterSeparator(r.source, rows.guard.start, known(r.source.Kind(), cells)); cells == nil && other != "" {
+			p.Kind, p.Do = "separator", fmt.Sprintf("set separator = %q, which gives %d columns", other, n)
+		}
 		r.add(*p)
 		if cells == nil {
 			return nil
 		}
 	}
-	plan, problems, fatal := newPlan(r.source, cells, rows.line)
+	plan, problems, fatal := newPlan(r.source, cells, rows.line, rows.guard.start)
 	for _, p := range problems {
 		r.add(p)
 	}

@@ -96,10 +96,13 @@ func (r *rows) look(cells []string) *problem.Problem {
 	if r.header == 0 || len(cells) == r.header || len(cells) >= r.named && len(cells) < r.header {
 		return r.unnamed(cells)
 	}
-	p := &problem.Problem{Line: r.line, Kind: "ragged row", Found: cellCount(len(cells)),
-		Expected: fmt.Sprintf("%d as in the header", r.header),
+	expected := r.header
+	if len(cells) < r.named {
+		expected = r.named
+	}
+	return &problem.Problem{Line: r.line, Kind: "ragged row", Found: cellCount(len(cells)),
+		Expected: fmt.Sprintf("%d as in the header", expected),
 		Do:       "check for a missing separator, or for one inside a cell that is not quoted"}
-	return p
 }
 
 // unnamed finds a value past the last named column: most likely the row is

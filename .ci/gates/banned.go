@@ -60,8 +60,8 @@ func init() {
 // sortedBy take the keys of a map in any order and give them back in one.
 var sortedBy = []string{"slices.Sorted", "slices.SortedFunc", "slices.SortedStableFunc"}
 
-// allowed are the uses that reach no digest, as "file name": the reason.
-// A line that no longer matches anything is a finding too.
+// allowed are the uses that reach no digest, as "file function name": the
+// reason. An entry that no longer matches anything is a finding too.
 var allowed = map[string]string{}
 
 // pkg is what this gate needs of go list's answer.
@@ -102,8 +102,8 @@ func bannedCalls(root, overlay string) ([]Finding, int, error) {
 	}
 	for use := range allowed {
 		if !c.used[use] {
-			file, name, _ := strings.Cut(use, " ")
-			c.found = append(c.found, Finding{file, 1, "the gates allow " + name + " here, but it is not used: drop it from their list"})
+			file, what, _ := strings.Cut(use, " ")
+			c.found = append(c.found, Finding{file, 1, "the gates allow " + what + " here, but it is not used: drop it from their list"})
 		}
 	}
 	return c.found, n, nil
@@ -115,6 +115,7 @@ type check struct {
 	export   map[string]string // import path -> file with its exported types
 	fset     *token.FileSet
 	importer types.Importer
+	function string          // the one being looked at, "" outside
 	used     map[string]bool // entries of allowed that were needed
 	found    []Finding
 }
@@ -142,7 +143,9 @@ func (c *check) pkg(p pkg) error {
 	}
 	for _, f := range files {
 		c.imports(f)
-		c.uses(f, info)
+		for _, d := range f.Decls {
+			c.uses(d, info)
+		}
 	}
 	for _, name := range slices.Concat(p.CgoFiles, p.SFiles, p.CFiles, p.HFiles) {
 		c.report(p, name, "assembly and C are out of these gates' sight: write it in Go")
@@ -185,6 +188,7 @@ func (c *check) parse(p pkg, name string) (*ast.File, error) {
 }
 
 func (c *check) imports(f *ast.File) {
+	c.function = "imports"
 	for _, s := range f.Imports {
 		path, err := strconv.Unquote(s.Path.Value)
 		if err != nil {
@@ -198,17 +202,24 @@ func (c *check) imports(f *ast.File) {
 	}
 }
 
-// uses walks a file with the calls that surround each node at hand, so that
-// maps.Keys is let through as the argument of a sort.
-func (c *check) uses(f *ast.File, info *types.Info) {
+// uses walks a declaration. maps.Keys is let through as the argument of a sort.
+func (c *check) uses(d ast.Decl, info *types.Info) {
+	c.function = ""
+	if f, ok := d.(*ast.FuncDecl); ok {
+		c.function = f.Name.Name
+	}
 	sorts := map[ast.Node]bool{}
-	ast.Inspect(f, func(n ast.Node) bool {
+	ast.Inspect(d, func(n ast.Node) bool {
 		switch n := n.(type) {
 		case *ast.CallExpr:
 			if slices.Contains(sortedBy, fullName(info, n.Fun)) && len(n.Args) > 0 {
 				if inner, ok := n.Args[0].(*ast.CallExpr); ok {
 					sorts[calleeIdent(inner.Fun)] = true
 				}
+			}
+		case *ast.RangeStmt:
+			if _, isMap := info.TypeOf(n.X).Underlying().(*types.Map); isMap {
+				c.add(n.Pos(), "range", "range over a map: "+useOrder)
 			}
 		case *ast.Ident:
 			name := objectName(info.Uses[n])
@@ -261,7 +272,7 @@ func (c *check) report(p pkg, name, what string) {
 func (c *check) add(at token.Pos, name, what string) {
 	pos := c.fset.Position(at)
 	file, _ := below(c.root, pos.Filename)
-	if use := file + " " + name; allowed[use] != "" {
+	if use := file + " " + c.function + " " + name; allowed[use] != "" {
 		c.used[use] = true
 		return
 	}

@@ -66,6 +66,9 @@ func PlantedOrder(of map[string]int) []string {
 	for k := range maps.Keys(of) { // maps.Keys
 		keys = append(keys, k)
 	}
+	for k := range of { // range
+		keys = append(keys, k)
+	}
 	return keys
 }
 

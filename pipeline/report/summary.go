@@ -112,7 +112,7 @@ func (s *Summary) temperatures(b *strings.Builder) {
 		fmt.Fprintf(b, "    %-40s %6d %8.0f %8.0f %8.0f %8s\n", name, t.N, t.Low, t.Median, t.High, sigma)
 	}
 	for _, n := range s.NoNumbers {
-		wrap(b, "  ", "    ", fmt.Sprintf("no number, %d times, %s: %s", n.N, n.What, n.Effect))
+		wrap(b, "  ", "    ", fmt.Sprintf("no number: %d x %s: %s", n.N, n.What, n.Effect))
 	}
 }
 

@@ -116,16 +116,16 @@ var margules = func() (all [3][7]*method.Quantity) {
 }()
 
 func margulesTerm(c, m int) *method.Quantity {
-	x, term := [3]int{c, (c + 1) % 3, (c + 2) % 3}, mixing.PartialTernary
+	x, fill := [3]int{c, (c + 1) % 3, (c + 2) % 3}, ternaryTerms
 	if m < len(mixing.Pairs) {
 		x = mixing.Pairs[m]
 		switch c {
 		case x[0]:
-			term = mixing.PartialI
+			fill = ownTerms
 		case x[1]:
-			term = mixing.PartialJ
+			fill = partnerTerms
 		default:
-			term = mixing.PartialK
+			fill = thirdTerms
 		}
 	}
 	return &method.Quantity{
@@ -133,11 +133,34 @@ func margulesTerm(c, m int) *method.Quantity {
 		Unit:  "1",
 		Needs: fractions,
 		Fill: func(b *method.Block, q []float64, _ []method.Reason) {
-			a0, a1, a2 := b.Of(inAfs[x[0]]), b.Of(inAfs[x[1]]), b.Of(inAfs[x[2]])
-			p0, p1, p2 := b.Of(inPl[x[0]]), b.Of(inPl[x[1]]), b.Of(inPl[x[2]])
-			for i := range q {
-				q[i] = term(p0[i], p1[i], p2[i]) - term(a0[i], a1[i], a2[i])
-			}
+			fill(q, b.Of(inPl[x[0]]), b.Of(inPl[x[1]]), b.Of(inPl[x[2]]), b.Of(inAfs[x[0]]), b.Of(inAfs[x[1]]), b.Of(inAfs[x[2]]))
 		},
+	}
+}
+
+// The four loops differ in the term only. A call through a variable for each
+// term would cost as much as the term.
+
+func ownTerms(q, pi, pj, pk, ai, aj, ak []float64) {
+	for n := range q {
+		q[n] = mixing.PartialI(pi[n], pj[n], pk[n]) - mixing.PartialI(ai[n], aj[n], ak[n])
+	}
+}
+
+func partnerTerms(q, pi, pj, pk, ai, aj, ak []float64) {
+	for n := range q {
+		q[n] = mixing.PartialJ(pi[n], pj[n], pk[n]) - mixing.PartialJ(ai[n], aj[n], ak[n])
+	}
+}
+
+func thirdTerms(q, pi, pj, pk, ai, aj, ak []float64) {
+	for n := range q {
+		q[n] = mixing.PartialK(pi[n], pj[n], pk[n]) - mixing.PartialK(ai[n], aj[n], ak[n])
+	}
+}
+
+func ternaryTerms(q, pc, pa, pb, ac, aa, ab []float64) {
+	for n := range q {
+		q[n] = mixing.PartialTernary(pc[n], pa[n], pb[n]) - mixing.PartialTernary(ac[n], aa[n], ab[n])
 	}
 }

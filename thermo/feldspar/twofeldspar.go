@@ -39,41 +39,74 @@ func twoFeldspar(info method.Info, k *Constants) *method.Method {
 	info.Closes = "Na-K (Ab, Or), An (An)"
 	info.Basis = Basis
 	info.Needs = fractions
+	var solved [3]solution
 	for c := range components {
-		info.Uses = append(info.Uses, ratios[c])
-		info.Uses = append(info.Uses, margules[c][:]...)
+		solved[c] = k.solution(info.ID, c, ratios[c])
+		info.Uses = append(info.Uses, solved[c].h, solved[c].v, solved[c].d)
 	}
 	return &method.Method{Info: info, Const: k, Eval: func(b *method.Block, lanes []method.Lane) {
-		for c := range components {
-			k.component(b, ratios[c], &margules[c], lanes[c])
+		for c := range solved {
+			solved[c].eval(b, lanes[c])
 		}
 	}}
 }
 
-// component solves one component's equality of activities. W is linear in T, so
-// the solution is exact.
-func (k *Constants) component(b *method.Block, ratio *method.Quantity, terms *[7]*method.Quantity, lane method.Lane) {
-	var f [7][]float64
-	for m, q := range terms {
-		f[m] = b.Of(q)[:b.N]
-	}
-	ln := b.Of(ratio)
-	why := lane.Why[:b.N]
-	method.Join(why, b.Why(ratio))
-	for i := range why {
-		row := mixing.Terms{f[0][i], f[1][i], f[2][i], f[3][i], f[4][i], f[5][i], f[6][i]}
-		d := k.Excess.S.Times(&row) - float64(k.R*ln[i])
-		h := k.Excess.H.Times(&row) + float64(float64(b.P[i])*k.Excess.V.Times(&row))
-		lane.T[i] = chem.Kelvin(h / d)
-		if why[i] == method.OK {
-			why[i] = k.judge(d, lane.T[i])
-		}
+// solution is one component's equality of activities. W is linear in T, so it
+// is exact, and P is the only thing that is not a quantity.
+type solution struct{ h, v, d *method.Quantity }
+
+func (k *Constants) solution(id string, c int, ratio *method.Quantity) solution {
+	s := difference("dS", "J/mol/K", id, c, &k.Excess.S)
+	return solution{
+		h: difference("dH", "J/mol", id, c, &k.Excess.H),
+		v: difference("dV", "J/mol/bar", id, c, &k.Excess.V),
+		d: &method.Quantity{
+			Name:  "D of " + components[c] + " (" + id + ")",
+			Unit:  "J/mol/K",
+			Needs: []*method.Quantity{s, ratio},
+			Fill: func(b *method.Block, q []float64, why []method.Reason) {
+				s, ln := b.Of(s), b.Of(ratio)
+				for i := range q {
+					q[i] = s[i] - float64(k.R*ln[i])
+					if why[i] == method.OK && math.Abs(q[i]) < k.MinEntropy {
+						why[i] = method.SmallEntropy
+					}
+				}
+			},
+		},
 	}
 }
 
-func (k *Constants) judge(d float64, t chem.Kelvin) method.Reason {
-	if math.Abs(d) < k.MinEntropy {
-		return method.SmallEntropy
+// difference is the enthalpy, entropy or volume in RT ln gamma of component c,
+// plagioclase less alkali feldspar. Parameters that are zero need no term.
+func difference(name, unit, id string, c int, w *mixing.Margules) *method.Quantity {
+	d := &method.Quantity{Name: name + " of " + components[c] + " (" + id + ")", Unit: unit}
+	var parameters []float64
+	for m, p := range w.Array() {
+		if p != 0 {
+			parameters = append(parameters, p)
+			d.Needs = append(d.Needs, margules[c][m])
+		}
 	}
-	return method.ReasonFor(t)
+	d.Fill = func(b *method.Block, q []float64, _ []method.Reason) {
+		clear(q)
+		for m, p := range parameters {
+			for i, term := range b.Of(d.Needs[m])[:len(q)] {
+				q[i] += float64(p * term)
+			}
+		}
+	}
+	return d
+}
+
+func (s solution) eval(b *method.Block, lane method.Lane) {
+	h, v, d := b.Of(s.h), b.Of(s.v), b.Of(s.d)
+	why := lane.Why[:b.N]
+	method.Join(why, b.Why(s.d))
+	for i, p := range b.P {
+		lane.T[i] = chem.Kelvin((h[i] + float64(float64(p)*v[i])) / d[i])
+		if why[i] == method.OK {
+			why[i] = method.ReasonFor(lane.T[i])
+		}
+	}
 }

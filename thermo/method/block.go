@@ -18,6 +18,9 @@ type column struct {
 	q      []float64
 	why    []Reason
 	filled bool
+	// some says whether any row has a reason, once seen is true: most columns
+	// have none, and nothing to join.
+	some, seen bool
 }
 
 // NewBlock makes a block of n rows with no quantity set and P zero.
@@ -36,7 +39,7 @@ func (b *Block) Reset(n int) {
 	b.P = b.P[:n]
 	clear(b.P)
 	for _, c := range b.cols {
-		c.filled = false
+		c.filled, c.seen = false, false
 	}
 }
 
@@ -55,10 +58,10 @@ func (b *Block) column(q *Quantity) *column {
 }
 
 // Set gives the block's column of a leaf for the caller to fill, values and
-// reasons of N rows, reasons cleared.
+// reasons of N rows, reasons cleared, before anything is read that needs it.
 func (b *Block) Set(q *Quantity) (values []float64, why []Reason) {
 	c := b.column(q)
-	c.filled = true
+	c.filled, c.seen = true, false
 	clear(c.why)
 	return c.q, c.why
 }
@@ -81,11 +84,26 @@ func (b *Block) fill(q *Quantity) *column {
 	}
 	clear(c.why)
 	for _, n := range q.Needs {
-		Join(c.why, b.Why(n))
+		b.join(c.why, n)
 	}
 	q.Fill(b, c.q, c.why)
 	c.filled = true
 	return c
+}
+
+// join is Join with the reasons of q.
+func (b *Block) join(why []Reason, q *Quantity) {
+	c := b.fill(q)
+	if !c.seen {
+		var all Reason
+		for _, w := range c.why {
+			all |= w
+		}
+		c.some, c.seen = all != OK, true
+	}
+	if c.some {
+		Join(why, c.why)
+	}
 }
 
 // Filled gives the quantities that were set or filled since the last Reset, in
@@ -152,7 +170,7 @@ func (m *Method) Evaluate(b *Block, lanes []Lane) {
 		why := lanes[i].Why[:b.N]
 		clear(why)
 		for _, q := range m.Needs {
-			Join(why, b.Why(q))
+			b.join(why, q)
 		}
 	}
 	m.Eval(b, lanes)

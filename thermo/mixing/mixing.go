@@ -24,6 +24,11 @@ var Names = [7]string{"AbOr", "OrAb", "AbAn", "AnAb", "OrAn", "AnOr", "AbOrAn"}
 // k for the third.
 var Pairs = [6][3]int{{0, 1, 2}, {1, 0, 2}, {0, 2, 1}, {2, 0, 1}, {1, 2, 0}, {2, 1, 0}}
 
+// Array is the parameters in the order of Terms.
+func (w *Margules) Array() [7]float64 {
+	return [7]float64{w.AbOr, w.OrAb, w.AbAn, w.AnAb, w.OrAn, w.AnOr, w.AbOrAn}
+}
+
 // Times is the energy: the sum of parameters times factors.
 func (w *Margules) Times(f *Terms) float64 {
 	return float64(w.AbOr*f[0]) + float64(w.OrAb*f[1]) + float64(w.AbAn*f[2]) + float64(w.AnAb*f[3]) +
