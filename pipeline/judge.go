@@ -172,7 +172,10 @@ func workedColumns(row *tables.AnalysisRow, c *chem.Composition, w *worked, endM
 		}
 	}
 	if w.hasFeldspar {
-		row.Ab, row.Or, row.An, row.Cn = &w.feldspar[0], &w.feldspar[1], &w.feldspar[2], &w.celsian
+		row.Ab, row.Or, row.An = &w.feldspar[0], &w.feldspar[1], &w.feldspar[2]
+		if c.Determined(chem.XCn) || c.Kind != chem.EndMember && formula.Determined(c, chem.Ba) { // not measured is not zero
+			row.Cn = &w.celsian
+		}
 	}
 	if endMemberSum != 0 {
 		row.EndMemberSum = &endMemberSum

@@ -17,7 +17,7 @@ type AnalysisRow struct {
 	Sample            string   `parquet:"sample,dict" doc:"Sample the analysis belongs to"`
 	Phase             string   `parquet:"phase,dict" doc:"Mineral symbol after Warr (2021), IMA-CNMNC; empty where the source's word for the phase is passed over"`
 	PhaseText         string   `parquet:"phase_text,dict" doc:"The phase as the source or the manifest words it"`
-	Texture           string   `parquet:"texture,optional,dict" doc:"Textural position: core, rim, host, lamella, inclusion, symplectite, matrix; NULL where not given"`
+	Texture           string   `parquet:"texture,optional,dict" doc:"Textural position, such as core, rim, host, lamella, inclusion, symplectite, matrix; NULL where not given"`
 	Domain            string   `parquet:"domain,optional,dict" doc:"Thin section or other frame that the stage coordinates belong to; NULL where not given"`
 	Generation        string   `parquet:"generation,optional,dict" doc:"Generation of the mineral as the source gives it; NULL where not given"`
 	Assemblage        string   `parquet:"assemblage,optional,dict" doc:"Minerals recorded as coexisting; NULL where not given"`
@@ -84,23 +84,23 @@ type AnalysisRow struct {
 	TotalWt           *float64 `parquet:"total_wt,optional" unit:"wt%" doc:"Total recomputed from the oxides, less the oxygen that F and Cl replace; NULL where the source gives no oxides"`
 	Oxygens           *float64 `parquet:"oxygens,optional" unit:"per formula unit" doc:"Oxygens the structural formula is based on; NULL where there is no formula"`
 	Fe3Basis          string   `parquet:"fe3_basis,optional,dict" doc:"Where the formula's ferric iron comes from: as given, all Fe2+, all Fe3+, charge balance; NULL where there is no formula"`
-	SiApfu            *float64 `parquet:"si_apfu,optional" unit:"apfu" doc:"Si atoms per formula unit; NULL where there is no formula"`
-	TiApfu            *float64 `parquet:"ti_apfu,optional" unit:"apfu" doc:"Ti atoms per formula unit; NULL where there is no formula"`
-	AlApfu            *float64 `parquet:"al_apfu,optional" unit:"apfu" doc:"Al atoms per formula unit; NULL where there is no formula"`
-	CrApfu            *float64 `parquet:"cr_apfu,optional" unit:"apfu" doc:"Cr atoms per formula unit; NULL where there is no formula"`
-	VApfu             *float64 `parquet:"v_apfu,optional" unit:"apfu" doc:"V atoms per formula unit; NULL where there is no formula"`
-	Fe3Apfu           *float64 `parquet:"fe3_apfu,optional" unit:"apfu" doc:"Fe3+ atoms per formula unit; NULL where there is no formula"`
-	Fe2Apfu           *float64 `parquet:"fe2_apfu,optional" unit:"apfu" doc:"Fe2+ atoms per formula unit; NULL where there is no formula"`
-	MnApfu            *float64 `parquet:"mn_apfu,optional" unit:"apfu" doc:"Mn atoms per formula unit; NULL where there is no formula"`
-	NiApfu            *float64 `parquet:"ni_apfu,optional" unit:"apfu" doc:"Ni atoms per formula unit; NULL where there is no formula"`
-	ZnApfu            *float64 `parquet:"zn_apfu,optional" unit:"apfu" doc:"Zn atoms per formula unit; NULL where there is no formula"`
-	MgApfu            *float64 `parquet:"mg_apfu,optional" unit:"apfu" doc:"Mg atoms per formula unit; NULL where there is no formula"`
-	CaApfu            *float64 `parquet:"ca_apfu,optional" unit:"apfu" doc:"Ca atoms per formula unit; NULL where there is no formula"`
-	SrApfu            *float64 `parquet:"sr_apfu,optional" unit:"apfu" doc:"Sr atoms per formula unit; NULL where there is no formula"`
-	BaApfu            *float64 `parquet:"ba_apfu,optional" unit:"apfu" doc:"Ba atoms per formula unit; NULL where there is no formula"`
-	NaApfu            *float64 `parquet:"na_apfu,optional" unit:"apfu" doc:"Na atoms per formula unit; NULL where there is no formula"`
-	KApfu             *float64 `parquet:"k_apfu,optional" unit:"apfu" doc:"K atoms per formula unit; NULL where there is no formula"`
-	PApfu             *float64 `parquet:"p_apfu,optional" unit:"apfu" doc:"P atoms per formula unit; NULL where there is no formula"`
+	SiApfu            *float64 `parquet:"si_apfu,optional" unit:"apfu" doc:"Si atoms per formula unit; NULL where not measured, or where there is no formula"`
+	TiApfu            *float64 `parquet:"ti_apfu,optional" unit:"apfu" doc:"Ti atoms per formula unit; NULL where not measured, or where there is no formula"`
+	AlApfu            *float64 `parquet:"al_apfu,optional" unit:"apfu" doc:"Al atoms per formula unit; NULL where not measured, or where there is no formula"`
+	CrApfu            *float64 `parquet:"cr_apfu,optional" unit:"apfu" doc:"Cr atoms per formula unit; NULL where not measured, or where there is no formula"`
+	VApfu             *float64 `parquet:"v_apfu,optional" unit:"apfu" doc:"V atoms per formula unit; NULL where not measured, or where there is no formula"`
+	Fe3Apfu           *float64 `parquet:"fe3_apfu,optional" unit:"apfu" doc:"Fe3+ atoms per formula unit; NULL where not measured, or where there is no formula"`
+	Fe2Apfu           *float64 `parquet:"fe2_apfu,optional" unit:"apfu" doc:"Fe2+ atoms per formula unit; NULL where not measured, or where there is no formula"`
+	MnApfu            *float64 `parquet:"mn_apfu,optional" unit:"apfu" doc:"Mn atoms per formula unit; NULL where not measured, or where there is no formula"`
+	NiApfu            *float64 `parquet:"ni_apfu,optional" unit:"apfu" doc:"Ni atoms per formula unit; NULL where not measured, or where there is no formula"`
+	ZnApfu            *float64 `parquet:"zn_apfu,optional" unit:"apfu" doc:"Zn atoms per formula unit; NULL where not measured, or where there is no formula"`
+	MgApfu            *float64 `parquet:"mg_apfu,optional" unit:"apfu" doc:"Mg atoms per formula unit; NULL where not measured, or where there is no formula"`
+	CaApfu            *float64 `parquet:"ca_apfu,optional" unit:"apfu" doc:"Ca atoms per formula unit; NULL where not measured, or where there is no formula"`
+	SrApfu            *float64 `parquet:"sr_apfu,optional" unit:"apfu" doc:"Sr atoms per formula unit; NULL where not measured, or where there is no formula"`
+	BaApfu            *float64 `parquet:"ba_apfu,optional" unit:"apfu" doc:"Ba atoms per formula unit; NULL where not measured, or where there is no formula"`
+	NaApfu            *float64 `parquet:"na_apfu,optional" unit:"apfu" doc:"Na atoms per formula unit; NULL where not measured, or where there is no formula"`
+	KApfu             *float64 `parquet:"k_apfu,optional" unit:"apfu" doc:"K atoms per formula unit; NULL where not measured, or where there is no formula"`
+	PApfu             *float64 `parquet:"p_apfu,optional" unit:"apfu" doc:"P atoms per formula unit; NULL where not measured, or where there is no formula"`
 	CationSum         *float64 `parquet:"cation_sum,optional" unit:"apfu" doc:"Sum of the cations per formula unit; NULL where there is no formula"`
 	Ab                *float64 `parquet:"ab,optional" unit:"mole fraction" doc:"Mole fraction of NaAlSi3O8 in a feldspar, Ab + Or + An = 1; NULL for other phases"`
 	Or                *float64 `parquet:"or,optional" unit:"mole fraction" doc:"Mole fraction of KAlSi3O8 in a feldspar, Ab + Or + An = 1; NULL for other phases"`
@@ -195,14 +195,14 @@ type PairRow struct {
 	DistanceUm    *float64 `parquet:"distance_um,optional" unit:"um" doc:"Distance between the two spots on the stage; NULL where either has no coordinates or their domains differ"`
 	PKbar         *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the pair is evaluated at; NULL where none is known"`
 	PSigmaKbar    *float64 `parquet:"p_sigma_kbar,optional" unit:"kbar" doc:"1-sigma of p_kbar; NULL where none is known"`
-	PSource       string   `parquet:"p_source,dict" doc:"Where p_kbar comes from: the source's own cells, the manifest's default (assumed pressure), or none"`
-	KdFeMg        *float64 `parquet:"kd_fe_mg,optional" unit:"1" doc:"Fe-Mg distribution coefficient (Fe/Mg in orthopyroxene) / (Fe/Mg in clinopyroxene), all iron as Fe2+; NULL for feldspars and where Fe or Mg is not known"`
+	PSource       string   `parquet:"p_source,dict" doc:"Where p_kbar comes from: source, manifest default (an assumed pressure), or none"`
+	KdFeMg        *float64 `parquet:"kd_fe_mg,optional" unit:"1" doc:"Fe-Mg distribution coefficient (Fe/Mg in clinopyroxene) / (Fe/Mg in orthopyroxene), all iron as Fe2+; NULL for feldspars and where Fe or Mg is not known"`
 	PublishedTC   *float64 `parquet:"published_t_c,optional" unit:"degC" doc:"Temperature the source publishes for this pair; NULL where it publishes none, or two that differ"`
 	PublishedKind string   `parquet:"published_kind,optional,dict" doc:"What the published temperature is: experiment, thermometer or estimate; NULL where the source publishes none"`
-	Variant       string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; base is the manifest as it stands"`
+	Variant       string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
 	Verdict       string   `parquet:"verdict,dict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons)"`
 	Reasons       string   `parquet:"reasons,optional,dict" doc:"Why the pair is flagged or set aside; NULL where it is kept"`
-	Lineage       string   `parquet:"lineage" doc:"128 bits of SHA-256, in hexadecimal, over the two analyses' lineages, the rule and the pressure; equal lineage means the row comes from equal input"`
+	Lineage       string   `parquet:"lineage" doc:"128 bits of SHA-256, in hexadecimal, over the two analyses' lineages and the rule; equal lineage means the row comes from equal input"`
 }
 
 // EstimateRow is one temperature from one method for one pair, or for one
@@ -215,18 +215,18 @@ type EstimateRow struct {
 	Locality      string   `parquet:"locality,optional,dict" doc:"Locality of the sample as the source names it; NULL where not given"`
 	Unit          string   `parquet:"unit,optional,dict" doc:"Geological unit of the sample as the source names it; NULL where not given"`
 	Texture       string   `parquet:"texture,optional,dict" doc:"Textural position of the pair or analysis; NULL where not given"`
-	Variant       string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; base is the manifest as it stands"`
+	Variant       string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
 	PairKind      string   `parquet:"pair_kind,dict" doc:"two-feldspar, two-pyroxene, or the one phase a method needs"`
 	Method        string   `parquet:"method,dict" doc:"Id of the published calibration; the command methods lists them with their equations"`
 	Component     string   `parquet:"component,optional,dict" doc:"The end member whose equilibrium gives the temperature, Ab, Or or An; NULL where a method gives one temperature"`
 	TC            *float64 `parquet:"t_c,optional" unit:"degC" doc:"The temperature; NULL where there is none, with the reason"`
 	DTDP          *float64 `parquet:"dt_dp_c_per_kbar,optional" unit:"degC/kbar" doc:"Change of the temperature with pressure at p_kbar, from P +- 100 bar; NULL where there is no temperature"`
 	PKbar         *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the temperature is computed at; NULL where none is known"`
-	PSource       string   `parquet:"p_source,dict" doc:"Where p_kbar comes from: the source's own cells, the manifest's default (assumed pressure), or none"`
-	Fe3Basis      string   `parquet:"fe3_basis,optional,dict" doc:"Ferric-iron convention of the method's formulae: as given, all Fe2+, all Fe3+, charge balance; NULL where the method uses no formula"`
-	InRange       *bool    `parquet:"in_range,optional" doc:"Whether composition, temperature and pressure lie where the method was calibrated; NULL where there is no temperature"`
+	PSource       string   `parquet:"p_source,dict" doc:"Where p_kbar comes from: source, manifest default (an assumed pressure), or none"`
+	Fe3Basis      string   `parquet:"fe3_basis,optional,dict" doc:"Ferric-iron convention of the method's formulae: as given, all Fe2+, all Fe3+, charge balance; NULL where the method takes no iron"`
+	InRange       *bool    `parquet:"in_range,optional" doc:"Whether composition, temperature and pressure lie where the method was calibrated; NULL where there is no temperature, and for as-published"`
 	OutOfRange    string   `parquet:"out_of_range,optional,dict" doc:"The variables outside the calibrated range, joined by commas; NULL where in_range is not false"`
-	Status        string   `parquet:"status,dict" doc:"Whether there is a number, in one word or phrase"`
+	Status        string   `parquet:"status,dict" doc:"number, or no number"`
 	Reason        string   `parquet:"reason,optional,dict" doc:"Why there is no number, or why the number is flagged or set aside; NULL for a number that is kept"`
 	Standing      string   `parquet:"standing,optional,dict" doc:"How sure it is that the coefficients are the published ones: confirmed, consistent, recalled; NULL for as-published"`
 	PublishedKind string   `parquet:"published_kind,optional,dict" doc:"For method as-published, what the temperature is: experiment, thermometer or estimate; NULL for other methods"`
@@ -240,7 +240,7 @@ type DiscrepancyRow struct {
 	GroupBy        string   `parquet:"group_by,dict" doc:"What the rows are grouped by; all for the whole compilation"`
 	Group          string   `parquet:"group,dict" doc:"The group's name; all for the whole compilation"`
 	PairKind       string   `parquet:"pair_kind,dict" doc:"two-feldspar, two-pyroxene, or the one phase the methods need"`
-	Variant        string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; base is the manifest as it stands"`
+	Variant        string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
 	MethodA        string   `parquet:"method_a,dict" doc:"Id of method a"`
 	ComponentA     string   `parquet:"component_a,optional,dict" doc:"Component of method a; NULL where it gives one temperature"`
 	MethodB        string   `parquet:"method_b,dict" doc:"Id of method b; as-published is always b"`
