@@ -399,7 +399,7 @@ func TestActivitiesAreEqualAtT(t *testing.T) {
 			}
 		}
 	})
-	if numbers < 100 {
+	if numbers < 50 { // of 120 with -short, 600 without
 		t.Errorf("only %d tie lines gave a number: the property was hardly tried", numbers)
 	}
 }
