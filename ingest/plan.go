@@ -137,13 +137,16 @@ type header struct {
 func newPlan(s *manifests.Source, cells []string, line int, start []byte) (p *plan, problems []problem.Problem, fatal bool) {
 	p = &plan{source: s, kind: s.Kind(), phases: newPhaseReader(s)}
 	h := &headerReader{plan: p, line: line}
+	if h.wrongSeparator(cells, start) {
+		return p, h.problems, true
+	}
 	headers := h.read(cells)
 	h.missingHeaders(headers)
 	h.repeated(headers)
 	h.use(headers)
 	h.foreignUnits(headers)
 	h.constants(headers)
-	fatal = h.needed(cells, start)
+	fatal = h.needed(cells)
 	p.seal()
 	return p, h.problems, fatal
 }
@@ -180,7 +183,7 @@ func (h *headerReader) read(cells []string) []header {
 		if q, ok := declared[one.text]; ok {
 			one.meaning, one.declared = meaning{quantity: q}, true
 		} else {
-			one.meaning = v.look(one.text)
+			one.meaning = v.look(cell)
 		}
 		out = append(out, one)
 	}
@@ -294,11 +297,11 @@ func (h *headerReader) constants(headers []header) {
 	p.hasSample, p.hasPhase = given[manifests.Sample], given[manifests.PhaseName]
 }
 
-// needed finds what no source can do without. Without a composition the header
-// is no header, most likely for a wrong separator.
-func (h *headerReader) needed(cells []string, start []byte) (fatal bool) {
+// needed finds what no source can do without. Without a composition there is no
+// use in reading rows.
+func (h *headerReader) needed(cells []string) (fatal bool) {
 	if !slices.ContainsFunc(h.plan.columns, func(c column) bool { return c.use.role == valueCell }) {
-		h.noComposition(cells, start)
+		h.noComposition(cells)
 		return true
 	}
 	if !h.plan.hasSample {
@@ -312,26 +315,42 @@ func (h *headerReader) needed(cells []string, start []byte) (fatal bool) {
 	return false
 }
 
-func (h *headerReader) noComposition(cells []string, start []byte) {
+func (h *headerReader) noComposition(cells []string) {
 	p := problem.Problem{Found: "no column is known to hold " + h.plan.kind.String(), Expected: "headers such as " + examples[h.plan.kind],
 		Do: "map the headers in columns"}
 	if len(cells) == 1 {
 		p.Found = "one column only, " + problem.Quote(cells[0])
 	}
-	if other, n := betterSeparator(h.plan.source, start, known(h.plan.kind, cells)); other != "" {
-		p.Kind, p.Do = "separator", fmt.Sprintf("set separator = %q, which gives %d columns", other, n)
-	} else if kind, ok := betterKind(cells); ok {
+	if kind, ok := betterKind(cells); ok {
 		p.Do = fmt.Sprintf("set composition = %q", kind)
 	}
 	h.problem(nil, p)
+}
+
+// wrongSeparator finds that another separator makes sense of the header where
+// this one makes none.
+func (h *headerReader) wrongSeparator(cells []string, start []byte) bool {
+	if known(h.plan.source, cells) > 0 {
+		return false
+	}
+	do := separatorAdvice(h.plan.source, start)
+	if do == "" {
+		return false
+	}
+	p := problem.Problem{Kind: "separator", Found: "no header is known", Expected: "the " + h.plan.source.Separator + " between cells", Do: do}
+	if len(cells) == 1 {
+		p.Found = "one column only, " + problem.Quote(cells[0])
+	}
+	h.problem(nil, p)
+	return true
 }
 
 var examples = [...]string{
 	chem.OxideWt: `"SiO2", "Al2O3 (wt%)", "FeO*"`, chem.Apfu: `"Si", "Al apfu", "Fe3+"`, chem.EndMember: `"Ab", "XOr", "An"`,
 }
 
-// known counts the headers that hold a composition of a kind.
-func known(kind chem.Kind, headers []string) int {
+// compositions counts the headers that hold a composition of a kind.
+func compositions(kind chem.Kind, headers []string) int {
 	v, n := vocabularyOf[kind](), 0
 	for _, h := range headers {
 		if _, _, ok := v.look(h).quantity.Measurand(); ok {
@@ -345,26 +364,40 @@ func known(kind chem.Kind, headers []string) int {
 func betterKind(headers []string) (best chem.Kind, ok bool) {
 	most := 0
 	for kind := range chem.EndMember + 1 {
-		if n := known(kind, headers); n > most {
+		if n := compositions(kind, headers); n > most {
 			most, best, ok = n, kind, true
 		}
 	}
 	return best, ok
 }
 
-// betterSeparator names the separator that would make of the start of a text a
-// header with more columns that are known to hold a composition.
-func betterSeparator(s *manifests.Source, start []byte, have int) (separator string, columns int) {
-	most := have
+// known counts the headers that mean something to the vocabulary or the manifest.
+func known(s *manifests.Source, headers []string) int {
+	v, n := vocabularyOf[s.Kind()](), 0
+	declared := map[string]bool{}
+	for text := range s.Columns {
+		declared[words(text)] = true
+	}
+	for _, h := range headers {
+		if declared[words(h)] || v.look(h).quantity != manifests.NoQuantity {
+			n++
+		}
+	}
+	return n
+}
+
+// separatorAdvice names the separator that makes of the start of a text a header
+// of several columns with the most that are known; "" where none does.
+func separatorAdvice(s *manifests.Source, start []byte) string {
+	most, advice := 0, ""
 	for _, other := range []string{"comma", "tab", "semicolon"} {
 		trial := manifests.Source{Separator: other}
 		cells := firstRow(start, trial.Comma())
-		n := known(s.Kind(), cells)
-		if other != s.Separator && len(cells) > 1 && n > most {
-			most, separator, columns = n, other, len(cells)
+		if n := known(s, cells); other != s.Separator && len(cells) > 1 && n > most {
+			most, advice = n, fmt.Sprintf("set separator = %q, which gives %d columns", other, len(cells))
 		}
 	}
-	return separator, columns
+	return advice
 }
 
 // firstRow splits the first row of a text that may be cut off.

@@ -112,8 +112,8 @@ func (r *reader) header(rows *rows) *plan {
 		r.stop(err)
 		return nil
 	case p != nil:
-		if other, n := betterSeparator(r.source, rows.guard.start, known(r.source.Kind(), cells)); cells == nil && other != "" {
-			p.Kind, p.Do = "separator", fmt.Sprintf("set separator = %q, which gives %d columns", other, n)
+		if do := separatorAdvice(r.source, rows.guard.start); cells == nil && do != "" {
+			p.Kind, p.Do = "separator", do
 		}
 		r.add(*p)
 		if cells == nil {

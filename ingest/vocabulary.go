@@ -193,10 +193,11 @@ func (m meaning) foreign() bool {
 var spelling = strings.NewReplacer("Σ", " sum ", "∑", " sum ", "σ", " sigma ", "*", " * ", "%", " % ", "#", " no ", "°", " ", "μ", "u")
 
 // tokens folds a header: NFKC, lower case, signs spelled out, split at spaces
-// and punctuation. A minus at the end stays: H2O- is not H2O.
+// and punctuation. Tabs and semicolons are left, they may be separators read as
+// none. A minus at the end stays: H2O- is not H2O.
 func tokens(header string) []string {
-	s := strings.ToLower(spelling.Replace(norm.NFKC.String(header)))
-	parts := strings.FieldsFunc(s, func(r rune) bool { return blank(r) || strings.ContainsRune("_-.,/()[]{}:;=|'\"−", r) })
+	s := strings.ToLower(spelling.Replace(norm.NFKC.String(trim(header))))
+	parts := strings.FieldsFunc(s, func(r rune) bool { return r != '\t' && blank(r) || strings.ContainsRune("_-.,/()[]{}:=|'\"−", r) })
 	end := strings.TrimRight(s, " )]}")
 	if strings.HasSuffix(end, "-") || strings.HasSuffix(end, minus) {
 		parts = append(parts, "minus")
