@@ -112,8 +112,8 @@ func NewBuilder(source string, kind chem.Kind) *Builder {
 }
 
 // Append copies a into the current batch. The error says what no batch can
-// hold: a number that is not finite, a value beside a state that has none, a
-// line past 2147483647.
+// hold: a number that is not finite, a value beside a state that has none, apfu
+// on other oxygens than the source's, a line past 2147483647.
 func (b *Builder) Append(a *Analysis) error {
 	if err := b.check(a); err != nil {
 		return fmt.Errorf("%s: line %d: %w", problem.Clean(b.source), a.Line, err)
@@ -134,6 +134,9 @@ func (b *Builder) Append(a *Analysis) error {
 func (b *Builder) check(a *Analysis) error {
 	if a.Composition.Kind != b.kind {
 		return fmt.Errorf("a composition in %s among compositions in %s", a.Composition.Kind, b.kind)
+	}
+	if len(b.rows) > 0 && a.Composition.Oxygens != b.rows[0].Composition.Oxygens {
+		return fmt.Errorf("a composition on %v oxygens among compositions on %v", a.Composition.Oxygens, b.rows[0].Composition.Oxygens)
 	}
 	if a.Line < 0 || a.Line > math.MaxInt32 || a.Column < 0 || a.Column > math.MaxInt32 {
 		return fmt.Errorf("column %d: past the 2147483647 lines or columns a source may have", a.Column)
@@ -174,6 +177,7 @@ type Batch struct {
 	Source string
 	Kind   chem.Kind
 
+	oxygens      float64 // that apfu are given on
 	phase        textColumn
 	line         *array.Int32
 	column       *array.Int32 // nil: all 0
@@ -225,7 +229,7 @@ func (b *Batch) Column(i int) int {
 
 // Composition writes row i's composition over what into holds.
 func (b *Batch) Composition(i int, into *chem.Composition) {
-	*into = chem.Composition{Kind: b.Kind}
+	*into = chem.Composition{Kind: b.Kind, Oxygens: b.oxygens}
 	for _, c := range b.measured {
 		if c.value != nil && c.value.IsValid(i) {
 			into.Value[c.of], into.State[c.of] = c.value.Value(i), chem.Measured

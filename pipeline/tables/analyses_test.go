@@ -73,9 +73,11 @@ func TestBatchesGiveBackWhatWasAppended(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		kind := chem.Kind(rapid.IntRange(0, 2).Draw(t, "kind"))
 		b := NewBuilder("here", kind)
+		oxygens := rapid.SampledFrom([]float64{0, 6, 8}).Draw(t, "oxygens")
 		var in []Analysis
 		for range rapid.IntRange(0, 6).Draw(t, "rows") {
 			a := drawAnalysis(t, kind)
+			a.Composition.Oxygens = oxygens
 			for range rapid.SampledFrom([]int{1, 1, 1, 5}).Draw(t, "times") { // repeated texts take the coded form
 				in = append(in, a)
 				if err := b.Append(&a); err != nil {
@@ -180,6 +182,18 @@ func TestAppendRefusesWhatNoBatchCanHold(t *testing.T) {
 		if err == nil || !strings.Contains(err.Error(), want) {
 			t.Errorf("error is %v, want one with %q", err, want)
 		}
+	}
+}
+
+func TestAppendRefusesOtherOxygens(t *testing.T) {
+	b, a := NewBuilder("here", chem.Apfu), Analysis{Line: 2, Phase: chem.Cpx}
+	a.Composition.Kind, a.Composition.Oxygens = chem.Apfu, 6
+	if err := b.Append(&a); err != nil {
+		t.Fatal(err)
+	}
+	a.Composition.Oxygens = 8
+	if err := b.Append(&a); err == nil || !strings.Contains(err.Error(), "on 8 oxygens among compositions on 6") {
+		t.Errorf("apfu on 8 oxygens among apfu on 6: error is %v", err)
 	}
 }
 

@@ -18,7 +18,7 @@ func (b *Builder) flush() {
 		return
 	}
 	f := flusher{rows: b.rows}
-	out := &Batch{Source: b.source, Kind: b.kind}
+	out := &Batch{Source: b.source, Kind: b.kind, oxygens: b.rows[0].Composition.Oxygens}
 	for t := range out.text {
 		out.text[t] = f.text(Text(t).String(), func(r *Analysis) string { return r.Text[t] })
 	}
