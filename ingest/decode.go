@@ -98,7 +98,7 @@ func decode(file io.Reader, declared string) (*decoded, *problem.Problem) {
 	raw := &counted{from: file, hash: sha256.New()}
 	in := bufio.NewReaderSize(raw, chunk)
 	head, err := in.Peek(sniffed)
-	if err != nil && err != io.EOF {
+	if len(head) == 0 && err != io.EOF {
 		return nil, readFailure(err)
 	}
 	if len(head) == 0 {

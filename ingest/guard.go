@@ -10,8 +10,8 @@ import (
 )
 
 const (
-	maxCell = 1 << 20  // bytes of one cell, far above any remark a table holds
-	maxRow  = 16 << 20 // bytes of one row, as much as 100000 columns of long cells
+	maxCell = 1 << 20 // bytes of one cell, far above any remark a table holds
+	maxRow  = 8 << 20 // bytes of one row, enough for 100000 columns of 80
 )
 
 // guard stands between the decoded text and the CSV reader, which reads a whole
@@ -246,13 +246,16 @@ func (g *guard) newRow() {
 // tooLong is the fault of a cell or a row past the limit. In quotes it may be
 // that the closing quote is missing.
 func (g *guard) tooLong() *fault {
-	p := problem.Problem{Line: g.openLine, Column: g.field, Kind: "size",
-		Found: fmt.Sprintf("a row of more than %d MiB", maxRow>>20), Do: "check the line ends and the separator"}
-	if g.cell > maxCell {
-		p.Found, p.Do = fmt.Sprintf("a cell of more than %d MiB", maxCell>>20), "check the line ends and the separator"
-		if g.state == quoted {
-			p.Found, p.Do = fmt.Sprintf("a quote that does not end within %d MiB", maxCell>>20), "close the quote, or remove it"
-		}
+	p := problem.Problem{Line: g.openLine, Column: g.field, Kind: "size", Do: "check the line ends and the separator"}
+	switch {
+	case g.cell <= maxCell:
+		p.Column = 0
+		p.Found = fmt.Sprintf("a row of more than %d MiB", maxRow>>20)
+	case g.state == quoted:
+		p.Found = fmt.Sprintf("a quote that does not end within %d MiB", maxCell>>20)
+		p.Do = "close the quote, or remove it"
+	default:
+		p.Found = fmt.Sprintf("a cell of more than %d MiB", maxCell>>20)
 	}
 	return &fault{p}
 }

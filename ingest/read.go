@@ -156,9 +156,6 @@ func (r *reader) rows(rows *rows, a *analyses, to *tables.Builder) (whole bool) 
 		if p == nil {
 			r.row(cells, rows, a, to)
 		} else {
-			if p.Column > 0 && p.Name == "" {
-				p.Name = nameOf(a.plan.reports, p.Column)
-			}
 			r.add(*p)
 		}
 		if r.advance != nil && r.out.Rows%step == 0 {
@@ -225,6 +222,9 @@ func (r *reader) stop(err error) {
 
 func (r *reader) add(p problem.Problem) {
 	p.Source = r.source.File
+	if p.Column > 0 && p.Name == "" {
+		p.Name = nameOf(r.out.Columns, p.Column)
+	}
 	r.problems.Add(p)
 }
 

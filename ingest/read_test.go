@@ -2,6 +2,7 @@ package ingest
 
 import (
 	"fmt"
+	"io"
 	"os"
 	"strings"
 	"testing"
@@ -115,4 +116,20 @@ func same(t *testing.T, what string, got, want []string) {
 			t.Errorf("%s, line %d:\n got %s\nwant %s", what, i+1, g, w)
 		}
 	}
+}
+
+func write(t testing.TB, path, text string) {
+	t.Helper()
+	if err := os.WriteFile(path, []byte(text), 0o600); err != nil {
+		t.Fatal(err)
+	}
+}
+
+// readStream is Read for one source whose bytes come from a reader.
+func readStream(m *manifests.Manifest, from io.Reader) (*tables.Analyses, Source, *problem.List) {
+	var out Source
+	problems := &problem.List{}
+	r := reader{source: &m.Sources[0], out: &out, problems: problems}
+	out.ID, out.File = r.source.ID, r.source.File
+	return &tables.Analyses{Batches: r.stream(from)}, out, problems
 }
