@@ -118,9 +118,6 @@ func (b *Builder) Append(a *Analysis) error {
 	if err := b.check(a); err != nil {
 		return fmt.Errorf("%s: line %d: %w", problem.Clean(b.source), a.Line, err)
 	}
-	if b.rows == nil {
-		b.rows = make([]Analysis, 0, BatchRows)
-	}
 	b.rows = append(b.rows, *a)
 	for _, t := range a.Text {
 		b.text += len(t)

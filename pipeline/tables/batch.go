@@ -17,27 +17,30 @@ func (b *Builder) flush() {
 	if len(b.rows) == 0 {
 		return
 	}
-	f := flusher{rows: b.rows}
+	f, holds := flusher{rows: b.rows}, survey(b.rows)
 	out := &Batch{Source: b.source, Kind: b.kind, oxygens: b.rows[0].Composition.Oxygens}
 	for t := range out.text {
-		out.text[t] = f.text(Text(t).String(), func(r *Analysis) string { return r.Text[t] })
+		if holds.text[t] {
+			out.text[t] = f.text(Text(t).String(), func(r *Analysis) string { return r.Text[t] })
+		}
 	}
 	out.phase = f.text("phase", func(r *Analysis) string { return string(r.Phase) })
-	out.line = f.int32s("line", func(r *Analysis) int32 { return int32(r.Line) }, true)
-	out.column = f.int32s("column", func(r *Analysis) int32 { return int32(r.Column) }, false)
+	out.line = f.int32s("line", func(r *Analysis) int32 { return int32(r.Line) })
+	if holds.column {
+		out.column = f.int32s("column", func(r *Analysis) int32 { return int32(r.Column) })
+	}
 	for n := range out.number {
-		out.number[n] = f.floats(Number(n).String(), func(r *Analysis) (float64, bool) { return r.Number[n], r.Has[n] })
+		if holds.number[n] {
+			out.number[n] = f.floats(Number(n).String(), func(r *Analysis) (float64, bool) { return r.Number[n], r.Has[n] })
+		}
 	}
 	for m := range chem.NumMeasurands {
-		c := measuredColumn{of: m}
-		c.value = f.floats(m.String(), func(r *Analysis) (float64, bool) {
-			return r.Composition.Value[m], r.Composition.State[m] == chem.Measured || r.Composition.Value[m] != 0
-		})
-		c.state = f.states(m.String()+" state", m)
-		if c.value != nil || c.state != nil {
+		if c, some := f.measured(m, &holds); some {
 			out.measured = append(out.measured, c)
 		}
-		out.sigma[m] = f.floats(m.String()+" sigma", func(r *Analysis) (float64, bool) { return r.Sigma[m], r.Sigma[m] != 0 })
+		if holds.sigma[m] {
+			out.sigma[m] = f.floats(m.String()+" sigma", func(r *Analysis) (float64, bool) { return r.Sigma[m], r.Sigma[m] != 0 })
+		}
 	}
 	if b.kind == chem.EndMember {
 		out.endMemberSum = f.floats("end_member_sum", func(r *Analysis) (float64, bool) { return r.EndMemberSum, true })
@@ -47,6 +50,41 @@ func (b *Builder) flush() {
 	b.done = append(b.done, out)
 	clear(b.rows) // let go of the cells' texts
 	b.rows, b.text = b.rows[:0], 0
+}
+
+// held says what some row of a batch holds; columns of the rest are not made.
+type held struct {
+	column              bool
+	text                [NumTexts]bool
+	number              [NumNumbers]bool
+	value, state, sigma [chem.NumMeasurands]bool
+}
+
+// survey looks at the rows one after the other: a column at a time each of its
+// two hundred looks would fetch every row from memory again.
+func survey(rows []Analysis) (h held) {
+	for i := range rows {
+		r := &rows[i]
+		h.column = h.column || r.Column != 0
+		for t := range r.Text {
+			h.text[t] = h.text[t] || r.Text[t] != ""
+		}
+		for n := range r.Number {
+			h.number[n] = h.number[n] || r.Has[n]
+		}
+		for m := range chem.NumMeasurands {
+			s := r.Composition.State[m]
+			h.value[m] = h.value[m] || hasValue(r, m)
+			h.state[m] = h.state[m] || s == chem.NotAnalysed || s == chem.BelowDetection
+			h.sigma[m] = h.sigma[m] || r.Sigma[m] != 0
+		}
+	}
+	return h
+}
+
+// hasValue is also true of a detection limit.
+func hasValue(r *Analysis, m chem.Measurand) bool {
+	return r.Composition.State[m] == chem.Measured || r.Composition.Value[m] != 0
 }
 
 // flusher makes Arrow columns of staged rows and notes them for the record.
@@ -81,12 +119,21 @@ func (f *flusher) data(t arrow.DataType, nulls int, buffers ...*memory.Buffer) *
 	return array.NewData(t, len(f.rows), buffers, nil, nulls, 0)
 }
 
-// floats is nil where no row has a value. -0 becomes 0.
+// measured makes the columns of one measurand; some is false where it has none.
+func (f *flusher) measured(m chem.Measurand, holds *held) (c measuredColumn, some bool) {
+	c.of = m
+	if holds.value[m] {
+		c.value = f.floats(m.String(), func(r *Analysis) (float64, bool) { return r.Composition.Value[m], hasValue(r, m) })
+	}
+	if holds.state[m] {
+		c.state = f.states(m.String()+" state", m)
+	}
+	return c, holds.value[m] || holds.state[m]
+}
+
+// floats makes a column of numbers, -0 as 0.
 func (f *flusher) floats(name string, get func(*Analysis) (float64, bool)) *array.Float64 {
 	bits, nulls := f.bitmap(func(r *Analysis) bool { _, ok := get(r); return ok })
-	if nulls == len(f.rows) {
-		return nil
-	}
 	values := make([]float64, len(f.rows))
 	for i := range f.rows {
 		if x, ok := get(&f.rows[i]); ok && x != 0 {
@@ -99,16 +146,10 @@ func (f *flusher) floats(name string, get func(*Analysis) (float64, bool)) *arra
 	return a
 }
 
-// int32s is nil where every row has 0, unless always.
-func (f *flusher) int32s(name string, get func(*Analysis) int32, always bool) *array.Int32 {
+func (f *flusher) int32s(name string, get func(*Analysis) int32) *array.Int32 {
 	values := make([]int32, len(f.rows))
-	any := always
 	for i := range f.rows {
 		values[i] = get(&f.rows[i])
-		any = any || values[i] != 0
-	}
-	if !any {
-		return nil
 	}
 	a := array.NewInt32Data(f.data(arrow.PrimitiveTypes.Int32, 0, nil,
 		memory.NewBufferBytes(arrow.Int32Traits.CastToBytes(values))))
@@ -116,17 +157,7 @@ func (f *flusher) int32s(name string, get func(*Analysis) int32, always bool) *a
 	return a
 }
 
-// states is nil where every cell is measured or missing, which the value's
-// validity says.
 func (f *flusher) states(name string, m chem.Measurand) *array.Uint8 {
-	said := true
-	for i := range f.rows {
-		s := f.rows[i].Composition.State[m]
-		said = said && (s == chem.Measured || s == chem.Missing)
-	}
-	if said {
-		return nil
-	}
 	values := make([]uint8, len(f.rows))
 	for i := range f.rows {
 		values[i] = uint8(f.rows[i].Composition.State[m])

@@ -205,7 +205,7 @@ func TestSameRowsSameBytes(t *testing.T) {
 	if sum := sha256.Sum256(text); once.SHA256 != hex.EncodeToString(sum[:]) || once.Bytes != int64(len(text)) || once.Rows != int64(len(rows)) {
 		t.Errorf("Written says %+v of %d rows in %d bytes with SHA-256 %x", once, len(rows), len(text), sum)
 	}
-	for _, pieces := range [][]int{{len(rows)}, {1, 1000, 7}, {batchRows}, {5, 64, 4096}} {
+	for _, pieces := range [][]int{{1, 1000, 7}, {5, 64, 4096}} {
 		if again, _ := write(t, rows, pieces...); !reflect.DeepEqual(again, once) {
 			t.Errorf("written in pieces of %v:\n got %+v\nwant %+v", pieces, again, once)
 		}
