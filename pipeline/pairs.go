@@ -129,8 +129,10 @@ func (s *state) recordRoles() {
 	}
 	for _, b := range s.all.Batches {
 		for row := range b.Len() {
-			if r := b.Phase(row).Role(); wanted[r] {
-				s.roleIn[sampleRole{b.Source, b.Text(tables.Sample, row), r}] = true
+			for _, p := range []chem.Phase{b.Phase(row), b.Phase(row).Role()} {
+				if wanted[p] {
+					s.roleIn[sampleRole{b.Source, b.Text(tables.Sample, row), p}] = true
+				}
 			}
 		}
 	}
@@ -145,7 +147,7 @@ func (s *state) beside(i int32, need chem.Phase) bool {
 	}
 	symbols := strings.FieldsFunc(b.Text(tables.Assemblage, row), func(r rune) bool { return strings.ContainsRune(" ,;+-/", r) })
 	for _, sym := range symbols {
-		if chem.Phase(sym).Role() == need {
+		if chem.Phase(sym) == need || chem.Phase(sym).Role() == need {
 			return true
 		}
 	}
