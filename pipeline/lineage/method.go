@@ -12,7 +12,7 @@ import (
 // probeRows is how many made-up pairs a method's outputs are digested over.
 const probeRows = 64
 
-// Method digests what a method is: its id, components, formula basis, the names
+// Method digests what a method is: its id and variant, components, formula basis, the names
 // of what it needs, its calibrated range, its constants, and its outputs on a
 // fixed probe, bit by bit. So an equation cannot change, on purpose or by
 // accident, without every estimate it made getting another lineage; no version
@@ -23,6 +23,9 @@ const probeRows = 64
 func Method(m *method.Method) Digest {
 	e := New("tieline method 1")
 	e.Text(m.ID)
+	if m.Variant != "" {
+		e.Text("variant").Text(m.Variant)
+	}
 	e.List(len(m.Components))
 	for _, c := range m.Components {
 		e.Text(c)

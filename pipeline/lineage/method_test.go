@@ -85,6 +85,7 @@ func TestMethodDigestSeesEveryChange(t *testing.T) {
 	}
 	for what, change := range map[string]func(*method.Method){
 		"the id":                    func(m *method.Method) { m.ID = "made-up/two" },
+		"the variant":               func(m *method.Method) { m.Variant = "all Fe2+" },
 		"a component's name":        func(m *method.Method) { m.Components[1] = "Ab" },
 		"a component less":          func(m *method.Method) { m.Components = m.Components[:1] },
 		"the iron convention":       func(m *method.Method) { m.Basis.Ferric = method.AllFe2 },

@@ -96,8 +96,10 @@ func TestPhaseRoles(t *testing.T) {
 			t.Errorf("%s plays %q", role, role.Role())
 		}
 	}
-	if Phase("K-spar").Known() || Phase("").Known() {
-		t.Error("a text that is no IMA symbol is known")
+	for _, p := range []Phase{"K-spar", "", NaFsp, KFsp} {
+		if p.Known() {
+			t.Errorf("%q is no IMA symbol and is known", p)
+		}
 	}
 }
 

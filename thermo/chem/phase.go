@@ -17,6 +17,16 @@ const (
 	Cpx Phase = "Cpx" // clinopyroxene
 )
 
+// Grt is garnet: it plays no role yet, but a method wants it beside a pyroxene.
+const Grt Phase = "Grt"
+
+// The sides of a pair of lamellae in one alkali feldspar. They are roles and no
+// mineral symbols: of two lamellae the one with less Or is the Na side.
+const (
+	NaFsp Phase = "Na-Fsp"
+	KFsp  Phase = "K-Fsp"
+)
+
 // phases lists every symbol that is accepted, with the role the phase plays in
 // a pair ("" for none yet). Pigeonite is no Cpx here: the two-pyroxene solvus
 // methods are calibrated on augite and diopside.

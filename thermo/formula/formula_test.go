@@ -357,6 +357,7 @@ func TestReader(t *testing.T) {
 	totalIron.State[chem.FeOT] = chem.BelowDetection
 	balanced := &method.Leaf{Phase: chem.Cpx, Basis: sixBalanced, Cations: []chem.Cation{chem.Ca}}
 	an := &method.Leaf{Phase: chem.Pl, EndMember: chem.XAn}
+	optional := &method.Leaf{Phase: chem.Cpx, Basis: sixAllFe2, Cations: []chem.Cation{chem.Na}, Optional: true}
 
 	var r Reader
 	for _, x := range []struct {
@@ -370,6 +371,9 @@ func TestReader(t *testing.T) {
 		{"not analysed", without(chem.Na2O, chem.NotAnalysed), leaf(chem.Na), method.NotMeasured, true},
 		{"missing", without(chem.Na2O, chem.Missing), leaf(chem.Na), method.NotMeasured, true},
 		{"below detection", without(chem.Na2O, chem.BelowDetection), leaf(chem.Na), method.OK, true},
+		{"optional, measured", oxides(full), optional, method.OK, false},
+		{"optional, not analysed", without(chem.Na2O, chem.NotAnalysed), optional, method.OK, true},
+		{"optional, SiO2 missing", without(chem.SiO2, chem.Missing), optional, method.NoFormula, true},
 		{"one of two cations missing", without(chem.Na2O, chem.Missing), leaf(chem.Ca, chem.Na), method.NotMeasured, true},
 		{"no iron in any form", without(chem.FeO, chem.Missing), leaf(chem.Fe2, chem.Fe3), method.NotMeasured, true},
 		{"total iron below detection", totalIron, leaf(chem.Fe2, chem.Fe3), method.OK, true},

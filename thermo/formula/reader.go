@@ -44,7 +44,7 @@ func (r *Reader) Formula(basis method.Basis) *Formula {
 
 // Leaf is the leaf's value in the analysis. Below detection is the number 0: a
 // method that takes its logarithm answers NonPositiveLog. What was not looked
-// for is NotMeasured, never 0. Where there is no formula of use it is NoFormula.
+// for is NotMeasured, never 0 unless it is optional. Where there is no formula of use it is NoFormula.
 func (r *Reader) Leaf(l *method.Leaf) (float64, method.Reason) {
 	if len(l.Cations) == 0 {
 		return r.endMember(l.EndMember)
@@ -58,7 +58,7 @@ func (r *Reader) Leaf(l *method.Leaf) (float64, method.Reason) {
 	}
 	var sum float64
 	for _, cation := range l.Cations {
-		if !determined(r.c, cation) {
+		if !l.Optional && !determined(r.c, cation) {
 			return 0, method.NotMeasured
 		}
 		sum += f.Apfu[cation]

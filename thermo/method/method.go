@@ -43,12 +43,14 @@ type Quantity struct {
 
 // Leaf says where a leaf quantity comes from.
 type Leaf struct {
-	Phase chem.Phase // the role, Afs, Pl, Opx, Cpx
+	Phase chem.Phase // the role, Afs, Pl, Na-Fsp, K-Fsp, Opx, Cpx
 	Basis Basis
 	// Cations are summed, apfu, Ca for most, Fe2 and Fe3 for total iron. Empty:
 	// the fraction of EndMember.
 	Cations   []chem.Cation
 	EndMember chem.Measurand // XAb, XOr, XAn of Ab + Or + An = 1
+	// Optional: what was not analysed counts as zero here, and is flagged on the analysis.
+	Optional bool
 	// Probe is the span a method's digest tries this quantity over.
 	Probe [2]float64
 }
@@ -82,8 +84,8 @@ type Range struct {
 
 // Sigma is the calibration's own 1-sigma.
 type Sigma struct {
-	C      []float64 // degC, one per component
-	Origin string    // "quoted, from memory" or "misfit on the 20 runs of Elkins & Grove 1990"
+	C      []float64 // degC, one per component; empty where there is neither a quoted value nor an experiment to measure it on
+	Origin string    // "quoted, from memory", "misfit on the 20 runs of Elkins & Grove 1990", or why there is none
 }
 
 // Standing says how sure we are that the coefficients are the published ones.
@@ -96,16 +98,28 @@ const (
 	Recalled   Standing = "recalled"   // from memory; computed only when a manifest names it
 )
 
+// Precision says how well a leaf must be known for a component's temperature to
+// mean anything: where the source gives a 1-sigma above MaxRelative of the value
+// there is no number, but TooUncertain. Without a sigma nothing is asked.
+type Precision struct {
+	Component   string
+	Leaf        *Quantity
+	MaxRelative float64
+}
+
 // Info is what a method says of itself.
 type Info struct {
 	ID, Equation, Ref string
-	Phases            []chem.Phase // one or two roles
-	Components        []string     // "Ab", "Or", "An"; one "" where a method gives one temperature
-	Extras            []string
-	Shares            []string // ids of methods that share data or constants with this one
-	DerivedFrom       []string // ids of methods this one is a function of: no agreement statistics between them
-	Closes            string   // the system that closes on cooling: "Ca solvus", "Fe-Mg", "Na-K", "An"
-	Assemblage        string   // what must coexist, in words; "" for nothing more than the phases
+	// Variant is "" on the calibration's own basis. A twin on another one has the
+	// same id, stands right after it in the list, and says here what differs.
+	Variant     string
+	Phases      []chem.Phase // one or two roles
+	Components  []string     // "Ab", "Or", "An"; one "" where a method gives one temperature
+	Extras      []string
+	Shares      []string // ids of methods that share data or constants with this one
+	DerivedFrom []string // ids of methods this one is a function of: no agreement statistics between them
+	Closes      string   // the system that closes on cooling: "Ca solvus", "Fe-Mg", "Na-K", "An"
+	Assemblage  string   // what must coexist, in words; "" for nothing more than the phases
 	// NeedsBeside is a role that must be recorded beside the analysis for a
 	// one-phase method; without it the temperature is a minimum. "" for none.
 	NeedsBeside chem.Phase
@@ -117,6 +131,8 @@ type Info struct {
 	Range    Range
 	Sigma    Sigma
 	Standing Standing
+	// Precise are the leaves that must be known well, where the source says how well.
+	Precise []Precision
 }
 
 // Method is one published calibration. Const is exactly the constants Eval

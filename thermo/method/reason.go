@@ -16,6 +16,12 @@ const (
 	NeedsPressure
 	NotFinite
 	M2Full
+	SiteFull
+	CaHalf
+	NoEnFs
+	NearPole
+	NoRoot
+	TooUncertain
 	numReasons
 )
 
@@ -29,6 +35,12 @@ var texts = [numReasons]string{
 	NeedsPressure:  "needs pressure: dT/dP is above 1 degC/kbar and none is given",
 	NotFinite:      "the equation has no finite value here",
 	M2Full:         "Ca/(1 - Na) is 1 or more: no Mg2Si2O6 is left to take the logarithm of",
+	SiteFull:       "other cations fill M1 or M2: no Mg is left there to take the logarithm of",
+	CaHalf:         "Ca/(Ca + Mg + Fe2+) is 0.5 or more: the method takes the logarithm of one less twice of it",
+	NoEnFs:         "no enstatite-ferrosilite is left in a pyroxene to take the logarithm of",
+	NearPole:       "the equation divides by nearly zero here",
+	NoRoot:         "the equation has no solution between 500 and 2500 K",
+	TooUncertain:   "the source's 1-sigma is above 0.3 of a component the method takes the logarithm of",
 }
 
 // String is the text tables and people see.
