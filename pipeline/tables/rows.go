@@ -10,28 +10,28 @@ import "tieline/thermo/chem"
 // AnalysisRow is one analysis: one spot, or one reported mean, on one phase.
 type AnalysisRow struct {
 	AnalysisID        string   `parquet:"analysis_id" doc:"The analysis's name in this compilation: source/label, or source/sample:phase where the source has no labels; #2, #3 ... mark repeats"`
-	Source            string   `parquet:"source,dict" doc:"Id of the source, as the manifest gives it"`
+	Source            string   `parquet:"source" doc:"Id of the source, as the manifest gives it"`
 	SourceLine        int64    `parquet:"source_line" doc:"Line of the source file on which the analysis starts, counted from 1"`
 	SourceColumn      *int64   `parquet:"source_column,optional" doc:"Column of the source file, counted from 1, where analyses stand side by side; NULL where a line is one analysis"`
 	Label             string   `parquet:"label,optional" doc:"Label of the analysis as the source gives it; NULL where it has none"`
-	Sample            string   `parquet:"sample,dict" doc:"Sample the analysis belongs to"`
-	Phase             string   `parquet:"phase,dict" doc:"Mineral symbol after Warr (2021), IMA-CNMNC; empty where the source's word for the phase is passed over"`
-	PhaseText         string   `parquet:"phase_text,dict" doc:"The phase as the source or the manifest words it"`
-	Texture           string   `parquet:"texture,optional,dict" doc:"Textural position, such as core, rim, host, lamella, inclusion, symplectite, matrix; NULL where not given"`
-	Domain            string   `parquet:"domain,optional,dict" doc:"Thin section or other frame that the stage coordinates belong to; NULL where not given"`
-	Generation        string   `parquet:"generation,optional,dict" doc:"Generation of the mineral as the source gives it; NULL where not given"`
-	Assemblage        string   `parquet:"assemblage,optional,dict" doc:"Minerals recorded as coexisting; NULL where not given"`
-	AnalysisKind      string   `parquet:"analysis_kind,optional,dict" doc:"Spot, raster, re-integrated, or mean of several spots; NULL where not given"`
-	Grain             string   `parquet:"grain,optional,dict" doc:"Grain as the source names it; NULL where not given"`
-	Session           string   `parquet:"session,optional,dict" doc:"Laboratory session, whose calibration error its analyses share; NULL where not given"`
+	Sample            string   `parquet:"sample" doc:"Sample the analysis belongs to"`
+	Phase             string   `parquet:"phase" doc:"Mineral symbol after Warr (2021), IMA-CNMNC; empty where the source's word for the phase is passed over"`
+	PhaseText         string   `parquet:"phase_text" doc:"The phase as the source or the manifest words it"`
+	Texture           string   `parquet:"texture,optional" doc:"Textural position, such as core, rim, host, lamella, inclusion, symplectite, matrix; NULL where not given"`
+	Domain            string   `parquet:"domain,optional" doc:"Thin section or other frame that the stage coordinates belong to; NULL where not given"`
+	Generation        string   `parquet:"generation,optional" doc:"Generation of the mineral as the source gives it; NULL where not given"`
+	Assemblage        string   `parquet:"assemblage,optional" doc:"Minerals recorded as coexisting; NULL where not given"`
+	AnalysisKind      string   `parquet:"analysis_kind,optional" doc:"Spot, raster, re-integrated, or mean of several spots; NULL where not given"`
+	Grain             string   `parquet:"grain,optional" doc:"Grain as the source names it; NULL where not given"`
+	Session           string   `parquet:"session,optional" doc:"Laboratory session, whose calibration error its analyses share; NULL where not given"`
 	SpotXUm           *float64 `parquet:"spot_x_um,optional" unit:"um" doc:"Stage x of the spot in its domain; NULL where not given"`
 	SpotYUm           *float64 `parquet:"spot_y_um,optional" unit:"um" doc:"Stage y of the spot in its domain; NULL where not given"`
 	NSpots            *float64 `parquet:"n_spots,optional" unit:"count" doc:"Number of spots a reported mean is of; NULL where not given"`
-	Locality          string   `parquet:"locality,optional,dict" doc:"Locality of the sample as the source names it; NULL where not given"`
-	Unit              string   `parquet:"unit,optional,dict" doc:"Geological unit of the sample as the source names it; NULL where not given"`
-	Latitude          string   `parquet:"latitude,optional,dict" doc:"Latitude as the source writes it; NULL where not given"`
-	Longitude         string   `parquet:"longitude,optional,dict" doc:"Longitude as the source writes it; NULL where not given"`
-	CompositionKind   string   `parquet:"composition_kind,dict" doc:"The kind of numbers the source gives: oxide wt%, apfu, or end-member fraction"`
+	Locality          string   `parquet:"locality,optional" doc:"Locality of the sample as the source names it; NULL where not given"`
+	Unit              string   `parquet:"unit,optional" doc:"Geological unit of the sample as the source names it; NULL where not given"`
+	Latitude          string   `parquet:"latitude,optional" doc:"Latitude as the source writes it; NULL where not given"`
+	Longitude         string   `parquet:"longitude,optional" doc:"Longitude as the source writes it; NULL where not given"`
+	CompositionKind   string   `parquet:"composition_kind" doc:"The kind of numbers the source gives: oxide wt%, apfu, or end-member fraction"`
 	SiO2Wt            *float64 `parquet:"sio2_wt,optional" unit:"wt%" doc:"SiO2, as measured; NULL where not given, not analysed or below detection"`
 	SiO2SigmaWt       *float64 `parquet:"sio2_sigma_wt,optional" unit:"wt%" doc:"1-sigma of SiO2: the source's own, else the manifest's rule; NULL where there is no number"`
 	TiO2Wt            *float64 `parquet:"tio2_wt,optional" unit:"wt%" doc:"TiO2, as measured; NULL where not given, not analysed or below detection"`
@@ -83,7 +83,7 @@ type AnalysisRow struct {
 	ReportedTotalWt   *float64 `parquet:"reported_total_wt,optional" unit:"wt%" doc:"Total as the source prints it; NULL where it prints none"`
 	TotalWt           *float64 `parquet:"total_wt,optional" unit:"wt%" doc:"Total recomputed from the oxides, less the oxygen that F and Cl replace; NULL where the source gives no oxides"`
 	Oxygens           *float64 `parquet:"oxygens,optional" unit:"per formula unit" doc:"Oxygens the structural formula is based on; NULL where there is no formula"`
-	Fe3Basis          string   `parquet:"fe3_basis,optional,dict" doc:"Where the formula's ferric iron comes from: as given, all Fe2+, all Fe3+, charge balance; NULL where there is no formula"`
+	Fe3Basis          string   `parquet:"fe3_basis,optional" doc:"Where the formula's ferric iron comes from: as given, all Fe2+, all Fe3+, charge balance; NULL where there is no formula"`
 	SiApfu            *float64 `parquet:"si_apfu,optional" unit:"apfu" doc:"Si atoms per formula unit; NULL where not measured, or where there is no formula"`
 	TiApfu            *float64 `parquet:"ti_apfu,optional" unit:"apfu" doc:"Ti atoms per formula unit; NULL where not measured, or where there is no formula"`
 	AlApfu            *float64 `parquet:"al_apfu,optional" unit:"apfu" doc:"Al atoms per formula unit; NULL where not measured, or where there is no formula"`
@@ -110,13 +110,13 @@ type AnalysisRow struct {
 	PublishedTC       *float64 `parquet:"published_t_c,optional" unit:"degC" doc:"Temperature the source publishes for this analysis; NULL where it publishes none"`
 	PublishedSigmaC   *float64 `parquet:"published_sigma_c,optional" unit:"degC" doc:"1-sigma of the published temperature as the source gives it; NULL where it gives none"`
 	PublishedPKbar    *float64 `parquet:"published_p_kbar,optional" unit:"kbar" doc:"Pressure the source publishes with the temperature; NULL where it publishes none"`
-	PublishedKind     string   `parquet:"published_kind,optional,dict" doc:"What the published temperature is: experiment, thermometer or estimate; NULL where the source publishes none"`
-	PublishedMethod   string   `parquet:"published_method,optional,dict" doc:"Method of the published temperature as the source names it; NULL where not given"`
+	PublishedKind     string   `parquet:"published_kind,optional" doc:"What the published temperature is: experiment, thermometer or estimate; NULL where the source publishes none"`
+	PublishedMethod   string   `parquet:"published_method,optional" doc:"Method of the published temperature as the source names it; NULL where not given"`
 	PKbar             *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the source gives for this analysis; NULL where it gives none"`
 	PSigmaKbar        *float64 `parquet:"p_sigma_kbar,optional" unit:"kbar" doc:"1-sigma of p_kbar as the source gives it; NULL where it gives none"`
 	PairLabel         string   `parquet:"pair_label,optional" doc:"Label that pairs this analysis with the one coexisting with it; NULL where not given"`
-	Verdict           string   `parquet:"verdict,dict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons)"`
-	Reasons           string   `parquet:"reasons,optional,dict" doc:"Why the analysis is flagged or set aside; NULL where it is kept"`
+	Verdict           string   `parquet:"verdict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons)"`
+	Reasons           string   `parquet:"reasons,optional" doc:"Why the analysis is flagged or set aside; NULL where it is kept"`
 	Lineage           string   `parquet:"lineage" doc:"128 bits of SHA-256, in hexadecimal, over the cells, units and settings the analysis was read with; equal lineage means the row comes from equal input"`
 }
 
@@ -180,28 +180,28 @@ func (r *AnalysisRow) Cation(c chem.Cation) **float64 {
 // PairRow is one pair of analyses taken as coexisting: the ends of a tie line.
 type PairRow struct {
 	PairID        string   `parquet:"pair_id" doc:"The pair's name in this compilation: source/sample/pair label:pair kind"`
-	PairKind      string   `parquet:"pair_kind,dict" doc:"The pair's two phases: two-feldspar or two-pyroxene"`
-	Source        string   `parquet:"source,dict" doc:"Id of the source both analyses come from"`
-	Sample        string   `parquet:"sample,dict" doc:"Sample both analyses belong to"`
-	Locality      string   `parquet:"locality,optional,dict" doc:"Locality of the sample as the source names it; NULL where not given"`
-	Unit          string   `parquet:"unit,optional,dict" doc:"Geological unit of the sample as the source names it; NULL where not given"`
-	Texture       string   `parquet:"texture,optional,dict" doc:"Textural position of the pair, of a and b where they differ; NULL where not given"`
+	PairKind      string   `parquet:"pair_kind" doc:"The pair's two phases: two-feldspar or two-pyroxene"`
+	Source        string   `parquet:"source" doc:"Id of the source both analyses come from"`
+	Sample        string   `parquet:"sample" doc:"Sample both analyses belong to"`
+	Locality      string   `parquet:"locality,optional" doc:"Locality of the sample as the source names it; NULL where not given"`
+	Unit          string   `parquet:"unit,optional" doc:"Geological unit of the sample as the source names it; NULL where not given"`
+	Texture       string   `parquet:"texture,optional" doc:"Textural position of the pair, of a and b where they differ; NULL where not given"`
 	PairLabel     string   `parquet:"pair_label,optional" doc:"The label the two analyses share; NULL where the rule needs none"`
 	AAnalysisID   string   `parquet:"a_analysis_id" doc:"analysis_id of the first end: alkali feldspar, or orthopyroxene"`
-	APhase        string   `parquet:"a_phase,dict" doc:"Mineral symbol of the first end"`
+	APhase        string   `parquet:"a_phase" doc:"Mineral symbol of the first end"`
 	BAnalysisID   string   `parquet:"b_analysis_id" doc:"analysis_id of the second end: plagioclase, or clinopyroxene"`
-	BPhase        string   `parquet:"b_phase,dict" doc:"Mineral symbol of the second end"`
-	Rule          string   `parquet:"rule,dict" doc:"The rule that paired them: listed, they share a pair label in one sample of one source"`
+	BPhase        string   `parquet:"b_phase" doc:"Mineral symbol of the second end"`
+	Rule          string   `parquet:"rule" doc:"The rule that paired them: listed, they share a pair label in one sample of one source"`
 	DistanceUm    *float64 `parquet:"distance_um,optional" unit:"um" doc:"Distance between the two spots on the stage; NULL where either has no coordinates or their domains differ"`
 	PKbar         *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the pair is evaluated at; NULL where none is known"`
 	PSigmaKbar    *float64 `parquet:"p_sigma_kbar,optional" unit:"kbar" doc:"1-sigma of p_kbar; NULL where none is known"`
-	PSource       string   `parquet:"p_source,dict" doc:"Where p_kbar comes from: source, manifest default (an assumed pressure), or none"`
+	PSource       string   `parquet:"p_source" doc:"Where p_kbar comes from: source, manifest default (an assumed pressure), or none"`
 	KdFeMg        *float64 `parquet:"kd_fe_mg,optional" unit:"1" doc:"Fe-Mg distribution coefficient (Fe/Mg in clinopyroxene) / (Fe/Mg in orthopyroxene), all iron as Fe2+; NULL for feldspars and where Fe or Mg is not known"`
 	PublishedTC   *float64 `parquet:"published_t_c,optional" unit:"degC" doc:"Temperature the source publishes for this pair; NULL where it publishes none, or two that differ"`
-	PublishedKind string   `parquet:"published_kind,optional,dict" doc:"What the published temperature is: experiment, thermometer or estimate; NULL where the source publishes none"`
-	Variant       string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
-	Verdict       string   `parquet:"verdict,dict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons)"`
-	Reasons       string   `parquet:"reasons,optional,dict" doc:"Why the pair is flagged or set aside; NULL where it is kept"`
+	PublishedKind string   `parquet:"published_kind,optional" doc:"What the published temperature is: experiment, thermometer or estimate; NULL where the source publishes none"`
+	Variant       string   `parquet:"variant" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
+	Verdict       string   `parquet:"verdict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons)"`
+	Reasons       string   `parquet:"reasons,optional" doc:"Why the pair is flagged or set aside; NULL where it is kept"`
 	Lineage       string   `parquet:"lineage" doc:"128 bits of SHA-256, in hexadecimal, over the two analyses' lineages and the rule; equal lineage means the row comes from equal input"`
 }
 
@@ -211,40 +211,40 @@ type EstimateRow struct {
 	EstimateID    string   `parquet:"estimate_id" doc:"The estimate's name in this compilation: pair_id or analysis_id|method|component"`
 	PairID        string   `parquet:"pair_id,optional" doc:"The pair the temperature is of; NULL for a method of one phase"`
 	AnalysisID    string   `parquet:"analysis_id,optional" doc:"The analysis the temperature is of; NULL for a method of two phases"`
-	Sample        string   `parquet:"sample,dict" doc:"Sample the pair or analysis belongs to"`
-	Locality      string   `parquet:"locality,optional,dict" doc:"Locality of the sample as the source names it; NULL where not given"`
-	Unit          string   `parquet:"unit,optional,dict" doc:"Geological unit of the sample as the source names it; NULL where not given"`
-	Texture       string   `parquet:"texture,optional,dict" doc:"Textural position of the pair or analysis; NULL where not given"`
-	Variant       string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
-	PairKind      string   `parquet:"pair_kind,dict" doc:"two-feldspar, two-pyroxene, or the one phase a method needs"`
-	Method        string   `parquet:"method,dict" doc:"Id of the published calibration; the command methods lists them with their equations"`
-	Component     string   `parquet:"component,optional,dict" doc:"The end member whose equilibrium gives the temperature, Ab, Or or An; NULL where a method gives one temperature"`
+	Sample        string   `parquet:"sample" doc:"Sample the pair or analysis belongs to"`
+	Locality      string   `parquet:"locality,optional" doc:"Locality of the sample as the source names it; NULL where not given"`
+	Unit          string   `parquet:"unit,optional" doc:"Geological unit of the sample as the source names it; NULL where not given"`
+	Texture       string   `parquet:"texture,optional" doc:"Textural position of the pair or analysis; NULL where not given"`
+	Variant       string   `parquet:"variant" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
+	PairKind      string   `parquet:"pair_kind" doc:"two-feldspar, two-pyroxene, or the one phase a method needs"`
+	Method        string   `parquet:"method" doc:"Id of the published calibration; the command methods lists them with their equations"`
+	Component     string   `parquet:"component,optional" doc:"The end member whose equilibrium gives the temperature, Ab, Or or An; NULL where a method gives one temperature"`
 	TC            *float64 `parquet:"t_c,optional" unit:"degC" doc:"The temperature; NULL where there is none, with the reason"`
 	DTDP          *float64 `parquet:"dt_dp_c_per_kbar,optional" unit:"degC/kbar" doc:"Change of the temperature with pressure at p_kbar, from P +- 100 bar; NULL where there is no temperature"`
 	PKbar         *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the temperature is computed at; NULL where none is known"`
-	PSource       string   `parquet:"p_source,dict" doc:"Where p_kbar comes from: source, manifest default (an assumed pressure), or none"`
-	Fe3Basis      string   `parquet:"fe3_basis,optional,dict" doc:"Ferric-iron convention of the method's formulae: as given, all Fe2+, all Fe3+, charge balance; NULL where the method takes no iron"`
+	PSource       string   `parquet:"p_source" doc:"Where p_kbar comes from: source, manifest default (an assumed pressure), or none"`
+	Fe3Basis      string   `parquet:"fe3_basis,optional" doc:"Ferric-iron convention of the method's formulae: as given, all Fe2+, all Fe3+, charge balance; NULL where the method takes no iron"`
 	InRange       *bool    `parquet:"in_range,optional" doc:"Whether composition, temperature and pressure lie where the method was calibrated; NULL where there is no temperature, and for as-published"`
-	OutOfRange    string   `parquet:"out_of_range,optional,dict" doc:"The variables outside the calibrated range, joined by commas; NULL where in_range is not false"`
-	Status        string   `parquet:"status,dict" doc:"number, or no number"`
-	Reason        string   `parquet:"reason,optional,dict" doc:"Why there is no number, or why the number is flagged or set aside; NULL for a number that is kept"`
-	Standing      string   `parquet:"standing,optional,dict" doc:"How sure it is that the coefficients are the published ones: confirmed, consistent, recalled; NULL for as-published"`
-	PublishedKind string   `parquet:"published_kind,optional,dict" doc:"For method as-published, what the temperature is: experiment, thermometer or estimate; NULL for other methods"`
-	Verdict       string   `parquet:"verdict,dict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons); the table qc has the reasons"`
+	OutOfRange    string   `parquet:"out_of_range,optional" doc:"The variables outside the calibrated range, joined by commas; NULL where in_range is not false"`
+	Status        string   `parquet:"status" doc:"number, or no number"`
+	Reason        string   `parquet:"reason,optional" doc:"Why there is no number, or why the number is flagged or set aside; NULL for a number that is kept"`
+	Standing      string   `parquet:"standing,optional" doc:"How sure it is that the coefficients are the published ones: confirmed, consistent, recalled; NULL for as-published"`
+	PublishedKind string   `parquet:"published_kind,optional" doc:"For method as-published, what the temperature is: experiment, thermometer or estimate; NULL for other methods"`
+	Verdict       string   `parquet:"verdict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons); the table qc has the reasons"`
 	Lineage       string   `parquet:"lineage" doc:"128 bits of SHA-256, in hexadecimal, over the pair's or analysis's lineage, the method's digest, the pressure and the settings; equal lineage means the row comes from equal input"`
 }
 
 // DiscrepancyRow is the statistics of one method against another, a minus b,
 // over the pairs or analyses where both give a temperature that is not set aside.
 type DiscrepancyRow struct {
-	GroupBy        string   `parquet:"group_by,dict" doc:"What the rows are grouped by; all for the whole compilation"`
-	Group          string   `parquet:"group,dict" doc:"The group's name; all for the whole compilation"`
-	PairKind       string   `parquet:"pair_kind,dict" doc:"two-feldspar, two-pyroxene, or the one phase the methods need"`
-	Variant        string   `parquet:"variant,dict" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
-	MethodA        string   `parquet:"method_a,dict" doc:"Id of method a"`
-	ComponentA     string   `parquet:"component_a,optional,dict" doc:"Component of method a; NULL where it gives one temperature"`
-	MethodB        string   `parquet:"method_b,dict" doc:"Id of method b; as-published is always b"`
-	ComponentB     string   `parquet:"component_b,optional,dict" doc:"Component of method b; NULL where it gives one temperature"`
+	GroupBy        string   `parquet:"group_by" doc:"What the rows are grouped by; all for the whole compilation"`
+	Group          string   `parquet:"group" doc:"The group's name; all for the whole compilation"`
+	PairKind       string   `parquet:"pair_kind" doc:"two-feldspar, two-pyroxene, or the one phase the methods need"`
+	Variant        string   `parquet:"variant" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
+	MethodA        string   `parquet:"method_a" doc:"Id of method a"`
+	ComponentA     string   `parquet:"component_a,optional" doc:"Component of method a; NULL where it gives one temperature"`
+	MethodB        string   `parquet:"method_b" doc:"Id of method b; as-published is always b"`
+	ComponentB     string   `parquet:"component_b,optional" doc:"Component of method b; NULL where it gives one temperature"`
 	N              int64    `parquet:"n" doc:"Number of differences"`
 	NSamples       int64    `parquet:"n_samples" doc:"Number of samples they come from"`
 	NSources       int64    `parquet:"n_sources" doc:"Number of sources they come from"`
@@ -259,13 +259,13 @@ type DiscrepancyRow struct {
 
 // FindingRow is one rule of quality control that fired on one row.
 type FindingRow struct {
-	RowKind    string   `parquet:"row_kind,dict" doc:"The table of the row: analysis, pair or estimate"`
+	RowKind    string   `parquet:"row_kind" doc:"The table of the row: analysis, pair or estimate"`
 	RowID      string   `parquet:"row_id" doc:"analysis_id, pair_id or estimate_id of the row"`
-	Rule       string   `parquet:"rule,dict" doc:"The rule that fired"`
-	Effect     string   `parquet:"effect,dict" doc:"noted, flagged (the row is used) or set aside (it is not)"`
+	Rule       string   `parquet:"rule" doc:"The rule that fired"`
+	Effect     string   `parquet:"effect" doc:"noted, flagged (the row is used) or set aside (it is not)"`
 	Value      *float64 `parquet:"value,optional" unit:"as the rule" doc:"The value the rule looked at; NULL where it looks at none"`
-	Limit      string   `parquet:"limit,optional,dict" doc:"The limit or limits it was held against; NULL where there is none"`
+	Limit      string   `parquet:"limit,optional" doc:"The limit or limits it was held against; NULL where there is none"`
 	Detail     string   `parquet:"detail" doc:"What was found, in words"`
-	Source     string   `parquet:"source,optional,dict" doc:"Id of the source the row comes from; NULL where it comes from no single one"`
+	Source     string   `parquet:"source,optional" doc:"Id of the source the row comes from; NULL where it comes from no single one"`
 	SourceLine *int64   `parquet:"source_line,optional" doc:"Line of the source file, counted from 1; NULL for pairs and estimates"`
 }

@@ -21,9 +21,8 @@ import (
 	"tieline/pipeline/problem"
 )
 
-// These decide the bytes of every file. parquet-go looks at page sizes after
-// every 64 rows of a call, so rows reach it in batches of a multiple of that,
-// whatever batches they come in.
+// These decide the bytes of every file: rows reach parquet-go in batches of one
+// size, whatever batches they come in, and it looks at the page size after each.
 const (
 	batchRows    = 1024
 	rowGroupRows = 128 * 1024
@@ -58,7 +57,6 @@ type Writer[T any] struct {
 	bytes   int64
 	parquet *parquet.GenericWriter[T]
 	content content
-	batch   []T
 	rows    int64
 	err     error // the first; nothing is written after it
 }
@@ -73,7 +71,7 @@ func Create[T any](dir string, table string) (*Writer[T], error) {
 	if err != nil {
 		return nil, explain(table, err)
 	}
-	w := &Writer[T]{table: table, file: file, hash: sha256.New(), batch: make([]T, 0, batchRows)}
+	w := &Writer[T]{table: table, file: file, hash: sha256.New()}
 	w.buffer = bufio.NewWriterSize(io.MultiWriter(file, w.hash, (*counter)(&w.bytes)), 256*1024)
 	columns := columnsOf(reflect.TypeFor[T]())
 	w.content = newContent(table, columns)
@@ -110,40 +108,39 @@ func (c *counter) Write(b []byte) (int, error) {
 // is not finite and a text that is not UTF-8, naming table, row and column;
 // -0 becomes 0. After an error every Write and Close gives that error.
 func (w *Writer[T]) Write(rows []T) error {
-	for len(rows) > 0 && w.err == nil {
-		n := min(len(rows), batchRows-len(w.batch))
-		from := len(w.batch)
-		w.batch = append(w.batch, rows[:n]...)
-		w.take(from)
-		rows = rows[n:]
-		if len(w.batch) == batchRows {
+	for i := range rows {
+		if w.err != nil {
+			break
+		}
+		row := reflect.ValueOf(&rows[i]).Elem()
+		if err := w.content.add(row); err != nil {
+			w.err = fmt.Errorf("table %s: row %d (%s): %w", w.table, w.rows+1, w.content.name(row), err)
+			break
+		}
+		if w.rows++; w.rows%batchRows == 0 {
 			w.flush()
 		}
 	}
 	return w.err
 }
 
-// take checks and digests the batch's rows from one on, and makes them its own.
-func (w *Writer[T]) take(from int) {
-	for i := from; i < len(w.batch); i++ {
-		row := reflect.ValueOf(&w.batch[i]).Elem()
-		if err := w.content.add(row, i); err != nil {
-			w.err = fmt.Errorf("table %s: row %d (%s): %w", w.table, w.rows+1, w.content.name(row), err)
-			return
-		}
-		w.rows++
-	}
-}
-
+// flush hands the values on column by column. As rows, parquet-go 0.32.0 writes
+// some NULL texts as "": in writeRowsFuncOfOptional it takes a run of values
+// followed by NULLs to the end of 64 rows for values throughout where the run is
+// as long as the part of the 64 before it.
 func (w *Writer[T]) flush() {
-	if w.err != nil {
-		return
+	for i, c := range w.parquet.ColumnWriters() {
+		values := w.content.values[i]
+		if w.err == nil && len(values) > 0 {
+			_, err := c.WriteRowValues(values)
+			w.err = explain(w.table, err)
+		}
+		clear(values)
+		w.content.values[i] = values[:0]
 	}
-	if _, err := w.parquet.Write(w.batch); err != nil {
-		w.err = explain(w.table, err)
+	if w.err == nil && w.rows%rowGroupRows == 0 {
+		w.err = explain(w.table, w.parquet.Flush())
 	}
-	clear(w.batch)
-	w.batch = w.batch[:0]
 }
 
 // Close finishes the file and puts it on the disk. It closes the file in any
@@ -184,122 +181,80 @@ func explain(table string, err error) error {
 	return fmt.Errorf("table %s: %w", table, err)
 }
 
-// content checks a batch's rows and digests their canonical encoding. What a
-// row points to it copies to a place of the batch, for the row's owner may use
-// the memory again before the batch is full.
+// content checks rows, digests their canonical encoding, and holds the values
+// that are not yet handed on.
 type content struct {
 	columns []column
-	places  []place // of each column
-	nonNull []int64 // of each column
+	values  [][]parquet.Value // of each column, a batch at most
+	nonNull []int64           // of each column
 	encoder *lineage.Encoder
 
 	microSum *int64 // of t_c, nil where there is no such column
 }
 
-// place holds a nullable column's values, by row of the batch.
-type place struct {
-	floats []float64
-	ints   []int64
-	bools  []bool
-}
-
 func newContent(table string, columns []column) content {
-	c := content{columns: columns, places: make([]place, len(columns)), nonNull: make([]int64, len(columns)),
+	c := content{columns: columns, values: make([][]parquet.Value, len(columns)), nonNull: make([]int64, len(columns)),
 		encoder: lineage.New("tieline table 1").Text(table).List(len(columns))}
 	for i, col := range columns {
 		c.encoder.Text(col.name)
+		c.values[i] = make([]parquet.Value, 0, batchRows)
 		if col.name == "t_c" {
 			c.microSum = new(int64)
-		}
-		switch {
-		case !col.nullable:
-		case col.kind == reflect.Float64:
-			c.places[i].floats = make([]float64, batchRows)
-		case col.kind == reflect.Int64:
-			c.places[i].ints = make([]int64, batchRows)
-		case col.kind == reflect.Bool:
-			c.places[i].bools = make([]bool, batchRows)
 		}
 	}
 	return c
 }
 
-// add takes row number at of the batch.
-func (c *content) add(row reflect.Value, at int) error {
+// add takes a row. Its values do not point to what may change.
+func (c *content) add(row reflect.Value) error {
 	for i := range c.columns {
-		var err error
-		switch v, col := row.Field(i), &c.columns[i]; {
-		case col.kind == reflect.String:
-			err = c.text(v.String(), col.nullable)
-			if !col.nullable || v.Len() > 0 {
-				c.nonNull[i]++
-			}
-		case !col.nullable:
-			err = c.plain(v)
-			c.nonNull[i]++
-		case v.IsNil():
-			c.encoder.Null()
-		default:
-			err = c.pointer(v, &c.places[i], at)
-			c.count(i, at)
-		}
+		col := &c.columns[i]
+		v, err := c.value(row.Field(i), col.nullable)
 		if err != nil {
-			return fmt.Errorf("column %s: %w", c.columns[i].name, err)
+			return fmt.Errorf("column %s: %w", col.name, err)
 		}
+		level := 0 // of definition: 1 for a value of a nullable column
+		if !v.IsNull() {
+			c.nonNull[i]++
+			if col.nullable {
+				level = 1
+			}
+			if col.name == "t_c" {
+				*c.microSum += int64(math.Round(float64(v.Double() * 1e6)))
+			}
+		}
+		c.values[i] = append(c.values[i], v.Level(0, level, i))
 	}
 	return nil
 }
 
-// count notes a nullable number that is there.
-func (c *content) count(i, at int) {
-	c.nonNull[i]++
-	if c.columns[i].name == "t_c" {
-		*c.microSum += int64(math.Round(float64(c.places[i].floats[at] * 1e6)))
-	}
-}
-
-func (c *content) text(s string, nullable bool) error {
-	switch {
-	case s == "" && nullable:
+// value encodes a field, and gives it as parquet-go takes it.
+func (c *content) value(v reflect.Value, nullable bool) (parquet.Value, error) {
+	if nullable && v.IsZero() { // nil, or no text
 		c.encoder.Null()
-	case !utf8.ValidString(s):
-		return fmt.Errorf("%s is not UTF-8", problem.Quote(s))
-	default:
-		c.encoder.Text(s)
+		return parquet.NullValue(), nil
 	}
-	return nil
-}
-
-func (c *content) plain(v reflect.Value) error {
+	if v.Kind() == reflect.Pointer {
+		v = v.Elem()
+	}
 	switch v.Kind() {
+	case reflect.String:
+		s := v.String()
+		if !utf8.ValidString(s) {
+			return parquet.Value{}, fmt.Errorf("%s is not UTF-8", problem.Quote(s))
+		}
+		c.encoder.Text(s)
+		return parquet.ValueOf(s), nil
 	case reflect.Int64:
 		c.encoder.Int(v.Int())
+		return parquet.Int64Value(v.Int()), nil
 	case reflect.Bool:
 		c.encoder.Int(number(v.Bool()))
-	case reflect.Float64:
+		return parquet.BooleanValue(v.Bool()), nil
+	default:
 		x, err := c.float(v.Float())
-		v.SetFloat(x)
-		return err
+		return parquet.DoubleValue(x), err
 	}
-	return nil
-}
-
-func (c *content) pointer(v reflect.Value, to *place, at int) error {
-	var err error
-	switch {
-	case to.floats != nil:
-		to.floats[at], err = c.float(v.Elem().Float())
-		v.Set(reflect.ValueOf(&to.floats[at]))
-	case to.ints != nil:
-		to.ints[at] = v.Elem().Int()
-		v.Set(reflect.ValueOf(&to.ints[at]))
-		c.encoder.Int(to.ints[at])
-	case to.bools != nil:
-		to.bools[at] = v.Elem().Bool()
-		v.Set(reflect.ValueOf(&to.bools[at]))
-		c.encoder.Int(number(to.bools[at]))
-	}
-	return err
 }
 
 // float gives x as tables hold it: finite, and 0 for -0.
