@@ -1,6 +1,7 @@
 package ingest
 
 import (
+	"maps"
 	"slices"
 	"strings"
 	"sync"
@@ -86,8 +87,8 @@ type phaseReader struct {
 
 func newPhaseReader(s *manifests.Source) *phaseReader {
 	r := &phaseReader{mapped: map[string]chem.Phase{}, passOver: map[string]bool{}, read: map[string]phaseReading{}}
-	for text, symbol := range s.Phases {
-		r.mapped[name(text)] = symbol
+	for _, text := range slices.Sorted(maps.Keys(s.Phases)) {
+		r.mapped[name(text)] = s.Phases[text]
 	}
 	for _, text := range s.PassOver {
 		r.passOver[strings.ToLower(name(text))] = true

@@ -5,6 +5,7 @@ import (
 	"cmp"
 	"encoding/csv"
 	"fmt"
+	"maps"
 	"slices"
 	"strings"
 
@@ -141,6 +142,8 @@ func newPlan(s *manifests.Source, cells []string, line int, start []byte) (p *pl
 		return p, h.problems, true
 	}
 	headers := h.read(cells)
+	h.alike("columns", slices.Sorted(maps.Keys(s.Columns)), words)
+	h.alike("phases", slices.Sorted(maps.Keys(s.Phases)), name)
 	h.missingHeaders(headers)
 	h.repeated(headers)
 	h.use(headers)
@@ -171,8 +174,8 @@ func (h *headerReader) problem(at *header, p problem.Problem) {
 func (h *headerReader) read(cells []string) []header {
 	v := vocabularyOf[h.plan.kind]()
 	declared := map[string]manifests.Quantity{}
-	for text, q := range h.plan.source.Columns {
-		declared[words(text)] = q
+	for _, text := range slices.Sorted(maps.Keys(h.plan.source.Columns)) {
+		declared[words(text)] = h.plan.source.Columns[text]
 	}
 	var out []header
 	for i, cell := range cells {
@@ -188,6 +191,21 @@ func (h *headerReader) read(cells []string) []header {
 		out = append(out, one)
 	}
 	return out
+}
+
+// alike refuses texts of the manifest that read as one: two headers, or two
+// phases, that differ in spaces or in the width of a letter.
+func (h *headerReader) alike(key string, texts []string, read func(string) string) {
+	first := map[string]string{}
+	for _, text := range texts {
+		before, twice := first[read(text)]
+		if !twice {
+			first[read(text)] = text
+			continue
+		}
+		h.problem(nil, problem.Problem{Found: problem.Quote(before) + " and " + problem.Quote(text) + " in the manifest's " + key + ", which read alike",
+			Expected: "each text once", Do: "keep one of the two"})
+	}
 }
 
 // missingHeaders finds headers the manifest maps and the file does not have.
