@@ -40,7 +40,7 @@ type Table struct {
 	File     string           `json:"file"`
 	Rows     *int64           `json:"rows"`
 	NonNull  map[string]int64 `json:"non_null"`
-	MicroSum *string          `json:"t_c_micro_sum"`
+	MicroSum *json.Number     `json:"t_c_micro_sum"`
 }
 
 func main() {
@@ -200,7 +200,7 @@ func (t Table) counts() (Counts, error) {
 	}
 	c := Counts{Reader: "record.json", Rows: *t.Rows, NonNull: t.NonNull, Micro: map[string]*big.Int{}}
 	if t.MicroSum != nil {
-		sum, ok := new(big.Int).SetString(*t.MicroSum, 10)
+		sum, ok := new(big.Int).SetString(t.MicroSum.String(), 10)
 		if !ok {
 			return Counts{}, fmt.Errorf("record.json: table %s: t_c_micro_sum is %q, not an integer", t.Table, *t.MicroSum)
 		}
