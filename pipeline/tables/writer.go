@@ -56,7 +56,7 @@ type Writer[T any] struct {
 	hash    hash.Hash
 	bytes   int64
 	parquet *parquet.GenericWriter[T]
-	content content
+	content *content
 	rows    int64
 	err     error // the first; nothing is written after it
 }
@@ -130,13 +130,10 @@ func (w *Writer[T]) Write(rows []T) error {
 // as long as the part of the 64 before it.
 func (w *Writer[T]) flush() {
 	for i, c := range w.parquet.ColumnWriters() {
-		values := w.content.values[i]
-		if w.err == nil && len(values) > 0 {
+		if values := w.content.take(i); w.err == nil && len(values) > 0 {
 			_, err := c.WriteRowValues(values)
 			w.err = explain(w.table, err)
 		}
-		clear(values)
-		w.content.values[i] = values[:0]
 	}
 	if w.err == nil && w.rows%rowGroupRows == 0 {
 		w.err = explain(w.table, w.parquet.Flush())
@@ -185,21 +182,33 @@ func explain(table string, err error) error {
 // that are not yet handed on.
 type content struct {
 	columns []column
-	values  [][]parquet.Value // of each column, a batch at most
-	nonNull []int64           // of each column
+	cells   []cells // of each column, a batch at most
+	nonNull []int64 // of each column
 	encoder *lineage.Encoder
+	values  []parquet.Value // of the column that is handed on
 
 	microSum *int64 // of t_c, nil where there is no such column
 }
 
-func newContent(table string, columns []column) content {
-	c := content{columns: columns, values: make([][]parquet.Value, len(columns)), nonNull: make([]int64, len(columns)),
+// cells are a column's values: a third of the memory of parquet-go's own, which
+// a wide table spreads over more than the processor's cache.
+type cells struct {
+	bits  []uint64 // of a float64, an int64 or a bool; where a text ends in bytes
+	bytes []byte   // of the texts, one after the other
+	null  []bool   // of a nullable column
+}
+
+func newContent(table string, columns []column) *content {
+	c := &content{columns: columns, cells: make([]cells, len(columns)), nonNull: make([]int64, len(columns)),
 		encoder: lineage.New("tieline table 1").Text(table).List(len(columns))}
 	for i, col := range columns {
 		c.encoder.Text(col.name)
-		c.values[i] = make([]parquet.Value, 0, batchRows)
 		if col.name == "t_c" {
 			c.microSum = new(int64)
+		}
+		c.cells[i].bits = make([]uint64, 0, batchRows)
+		if col.nullable {
+			c.cells[i].null = make([]bool, 0, batchRows)
 		}
 	}
 	return c
@@ -208,53 +217,105 @@ func newContent(table string, columns []column) content {
 // add takes a row. Its values do not point to what may change.
 func (c *content) add(row reflect.Value) error {
 	for i := range c.columns {
-		col := &c.columns[i]
-		v, err := c.value(row.Field(i), col.nullable)
+		var err error
+		switch col, v, to := &c.columns[i], row.Field(i), &c.cells[i]; {
+		case col.kind == reflect.String:
+			err = c.text(v.String(), col, to)
+		case col.nullable:
+			err = c.pointer(v, col, to)
+		default:
+			err = c.number(v, to)
+		}
 		if err != nil {
-			return fmt.Errorf("column %s: %w", col.name, err)
+			return fmt.Errorf("column %s: %w", c.columns[i].name, err)
 		}
-		level := 0 // of definition: 1 for a value of a nullable column
-		if !v.IsNull() {
-			c.nonNull[i]++
-			if col.nullable {
-				level = 1
-			}
-			if col.name == "t_c" {
-				*c.microSum += int64(math.Round(float64(v.Double() * 1e6)))
-			}
-		}
-		c.values[i] = append(c.values[i], v.Level(0, level, i))
 	}
 	return nil
 }
 
-// value encodes a field, and gives it as parquet-go takes it.
-func (c *content) value(v reflect.Value, nullable bool) (parquet.Value, error) {
-	if nullable && v.IsZero() { // nil, or no text
+func (c *content) text(s string, col *column, to *cells) error {
+	if col.nullable {
+		to.null = append(to.null, s == "")
+	}
+	to.bytes = append(to.bytes, s...)
+	to.bits = append(to.bits, uint64(len(to.bytes)))
+	switch {
+	case s == "" && col.nullable:
 		c.encoder.Null()
-		return parquet.NullValue(), nil
-	}
-	if v.Kind() == reflect.Pointer {
-		v = v.Elem()
-	}
-	switch v.Kind() {
-	case reflect.String:
-		s := v.String()
-		if !utf8.ValidString(s) {
-			return parquet.Value{}, fmt.Errorf("%s is not UTF-8", problem.Quote(s))
-		}
+	case !utf8.ValidString(s):
+		return fmt.Errorf("%s is not UTF-8", problem.Quote(s))
+	default:
 		c.encoder.Text(s)
-		return parquet.ValueOf(s), nil
+	}
+	return nil
+}
+
+func (c *content) pointer(v reflect.Value, col *column, to *cells) error {
+	null := v.IsNil()
+	to.null = append(to.null, null)
+	if null {
+		c.encoder.Null()
+		to.bits = append(to.bits, 0)
+		return nil
+	}
+	err := c.number(v.Elem(), to)
+	if err == nil && c.microSum != nil && col.name == "t_c" {
+		*c.microSum += int64(math.Round(float64(v.Elem().Float() * 1e6)))
+	}
+	return err
+}
+
+func (c *content) number(v reflect.Value, to *cells) error {
+	switch v.Kind() {
 	case reflect.Int64:
 		c.encoder.Int(v.Int())
-		return parquet.Int64Value(v.Int()), nil
+		to.bits = append(to.bits, uint64(v.Int()))
 	case reflect.Bool:
-		c.encoder.Int(number(v.Bool()))
-		return parquet.BooleanValue(v.Bool()), nil
-	default:
+		n := uint64(0)
+		if v.Bool() {
+			n = 1
+		}
+		c.encoder.Int(int64(n))
+		to.bits = append(to.bits, n)
+	case reflect.Float64:
 		x, err := c.float(v.Float())
-		return parquet.DoubleValue(x), err
+		to.bits = append(to.bits, math.Float64bits(x))
+		return err
 	}
+	return nil
+}
+
+// take gives a column's values as parquet-go takes them, until the next take,
+// and empties it.
+func (c *content) take(i int) []parquet.Value {
+	col, from := &c.columns[i], &c.cells[i]
+	c.values = c.values[:0]
+	start := uint64(0)
+	for k, bits := range from.bits {
+		if col.nullable && from.null[k] {
+			c.values = append(c.values, parquet.NullValue())
+			continue
+		}
+		var v parquet.Value
+		switch col.kind {
+		case reflect.String:
+			v = parquet.ByteArrayValue(from.bytes[start:bits])
+			start = bits
+		case reflect.Int64:
+			v = parquet.Int64Value(int64(bits))
+		case reflect.Bool:
+			v = parquet.BooleanValue(bits != 0)
+		case reflect.Float64:
+			v = parquet.DoubleValue(math.Float64frombits(bits))
+		}
+		if col.nullable {
+			v = v.Level(0, 1, i)
+		}
+		c.values = append(c.values, v)
+		c.nonNull[i]++
+	}
+	from.bits, from.bytes, from.null = from.bits[:0], from.bytes[:0], from.null[:0]
+	return c.values
 }
 
 // float gives x as tables hold it: finite, and 0 for -0.
@@ -267,13 +328,6 @@ func (c *content) float(x float64) (float64, error) {
 	}
 	c.encoder.Float(x)
 	return x, nil
-}
-
-func number(b bool) int64 {
-	if b {
-		return 1
-	}
-	return 0
 }
 
 // name is the row's first column, as people are shown it.
