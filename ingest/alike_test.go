@@ -15,7 +15,9 @@ func TestTextsThatReadAlikeAreRefused(t *testing.T) {
 		change func(*manifests.Source)
 		want   string
 	}{
-		{func(s *manifests.Source) { s.Columns = map[string]manifests.Quantity{"Rock  no": manifests.Label, "Rock no": manifests.Sample} },
+		{func(s *manifests.Source) {
+			s.Columns = map[string]manifests.Quantity{"Rock  no": manifests.Label, "Rock no": manifests.Sample}
+		},
 			`"Rock  no" and "Rock no" in the manifest's columns, which read alike`},
 		{func(s *manifests.Source) { s.Phases = map[string]chem.Phase{" Hyp": chem.Cpx, "Hyp": chem.Opx} },
 			`" Hyp" and "Hyp" in the manifest's phases, which read alike`},

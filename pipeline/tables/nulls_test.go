@@ -39,7 +39,7 @@ func TestNoDictionary(t *testing.T) {
 	_, path := write(t, estimates(500), 500)
 	for _, group := range open(t, path).Metadata().RowGroups {
 		for _, c := range group.Columns {
-			if slices.Contains(c.MetaData.Encoding, format.RLEDictionary) || slices.Contains(c.MetaData.Encoding, format.PlainDictionary) {
+			if slices.Contains(c.MetaData.Encoding, format.RLEDictionary) {
 				t.Errorf("column %v is written with a dictionary", c.MetaData.PathInSchema)
 			}
 		}
