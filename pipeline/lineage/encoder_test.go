@@ -213,7 +213,7 @@ func TestDrawKeys(t *testing.T) {
 		}
 		seen[key(a)] = what
 	}
-	if key(base) != key(base) {
+	if first, again := key(base), key(base); first != again {
 		t.Error("the same measurement has two keys")
 	}
 	if a, b := DrawKeyOf("pressure", 1, "10", "1.5"), DrawKeyOf("session", 1, "10", "1.5"); a == b {
