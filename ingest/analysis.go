@@ -1,7 +1,6 @@
 package ingest
 
 import (
-	"strconv"
 	"strings"
 
 	"tieline/manifests"
@@ -18,15 +17,13 @@ type analyses struct {
 	plan  *plan
 	cells *cells
 	one   tables.Analysis
-	ids   map[string]taken
-	alike map[lineage.Digest]int64 // rows, of ids that several rows have
 	enc   *lineage.Encoder
 
 	problems []problem.Problem // of the row last read
 }
 
 func newAnalyses(p *plan) *analyses {
-	a := &analyses{plan: p, cells: newCells(p.source), ids: map[string]taken{}, alike: map[lineage.Digest]int64{}, enc: lineage.New(analysisDomain)}
+	a := &analyses{plan: p, cells: newCells(p.source), enc: lineage.New(analysisDomain)}
 	a.one.Text = p.constants
 	a.one.Phase = p.source.Phase
 	a.one.Composition.Kind = p.kind
@@ -34,8 +31,8 @@ func newAnalyses(p *plan) *analyses {
 	return a
 }
 
-// read makes row into an analysis, which is good until the call after. It is
-// nil where the row has problems.
+// read makes row into an analysis, which is good until the call after and has no
+// id yet. It is nil where the row has problems.
 func (a *analyses) read(row []string, r *rows) *tables.Analysis {
 	a.problems = a.problems[:0]
 	one := &a.one
@@ -58,7 +55,7 @@ func (a *analyses) read(row []string, r *rows) *tables.Analysis {
 	if one.Composition.Kind == chem.EndMember {
 		renormalise(one)
 	}
-	a.identify()
+	one.Lineage = a.enc.Sum()
 	return one
 }
 
@@ -199,59 +196,6 @@ func renormalise(a *tables.Analysis) {
 		c.Value[m] /= sum
 		a.Sigma[m] /= sum
 	}
-}
-
-// taken is an analysis id in use.
-type taken struct {
-	rows  int            // whose id it is before "#2" is added
-	first lineage.Digest // of the first of them
-}
-
-// identify gives the row its id and its lineage. The id is the source's label,
-// else sample and phase; the second row of an id gets "#2", and a label that
-// looks like an id so made is stepped over. Rows that are alike differ in
-// lineage by their ordinal; they can only be rows of one id, as their labels,
-// samples and phases are alike too.
-func (a *analyses) identify() {
-	one := &a.one
-	one.Lineage = a.enc.Sum()
-	id := a.baseID()
-	t, again := a.ids[id]
-	if !again {
-		a.ids[id] = taken{1, one.Lineage}
-		one.Text[tables.AnalysisID] = id
-		return
-	}
-	if t.rows == 1 {
-		a.alike[t.first]++
-	}
-	for {
-		t.rows++
-		next := id + "#" + strconv.Itoa(t.rows)
-		if _, other := a.ids[next]; !other {
-			a.ids[id] = t
-			a.ids[next] = taken{rows: 1}
-			one.Text[tables.AnalysisID] = next
-			break
-		}
-	}
-	d := one.Lineage
-	a.alike[d]++
-	if n := a.alike[d]; n > 1 {
-		one.Lineage = a.enc.Reset(analysisDomain).Digest(d).Int(n).Sum()
-	}
-}
-
-func (a *analyses) baseID() string {
-	t := &a.one.Text
-	if t[tables.Label] != "" {
-		return a.plan.source.ID + "/" + t[tables.Label]
-	}
-	phase := string(a.one.Phase)
-	if phase == "" {
-		phase = t[tables.PhaseText]
-	}
-	return a.plan.source.ID + "/" + t[tables.Sample] + ":" + phase
 }
 
 func (c *Column) number(x float64) {

@@ -92,13 +92,17 @@ func (r *reader) stream(file io.Reader) []*tables.Batch {
 	if plan == nil {
 		return nil
 	}
-	builder := tables.NewBuilder(r.source.ID, plan.kind)
-	whole := r.rows(rows, newAnalyses(plan), builder)
+	to := newGatherer(plan)
+	whole := r.rows(rows, newAnalyses(plan), to)
+	batches := to.finish()
+	for _, p := range to.problems {
+		r.add(p)
+	}
 	r.out.Columns, r.out.BlankLines = plan.reports, rows.blank
 	if whole {
 		r.digest(text)
 	}
-	return builder.Finish()
+	return batches
 }
 
 // header reads the header into a plan, nil where there is none to follow.
@@ -145,7 +149,7 @@ func lastNamed(cells []string) int {
 const step = 1000
 
 // rows reads every row; whole says that the end was reached.
-func (r *reader) rows(rows *rows, a *analyses, to *tables.Builder) (whole bool) {
+func (r *reader) rows(rows *rows, a *analyses, to *gatherer) (whole bool) {
 	for {
 		cells, p, err := rows.next()
 		if err != nil {
@@ -164,7 +168,7 @@ func (r *reader) rows(rows *rows, a *analyses, to *tables.Builder) (whole bool) 
 	}
 }
 
-func (r *reader) row(cells []string, rows *rows, a *analyses, to *tables.Builder) {
+func (r *reader) row(cells []string, rows *rows, a *analyses, to *gatherer) {
 	one := a.read(cells, rows)
 	for _, p := range a.problems {
 		r.add(p)
@@ -175,9 +179,7 @@ func (r *reader) row(cells []string, rows *rows, a *analyses, to *tables.Builder
 	if one.Text[tables.SetAside] != "" {
 		r.out.PassedOver++
 	}
-	if err := to.Append(one); err != nil {
-		r.add(problem.Problem{Line: rows.line, Kind: "row", Found: err.Error()})
-	}
+	to.add(one)
 }
 
 func nameOf(columns []Column, position int) string {
