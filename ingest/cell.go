@@ -116,6 +116,10 @@ func (c *cells) plain(cell string, u *use) reading {
 		return check(r, float64(-chem.ZeroCelsius), tooCold)
 	case tables.PublishedSigmaC, tables.PublishedPKbar, tables.PKbar, tables.PSigmaKbar:
 		return check(r, 0, negative)
+	case tables.AreaFraction:
+		if r.state == chem.Measured && !(r.value >= 0 && r.value <= 1) {
+			return reading{fault: notFraction}
+		}
 	case tables.NSpots:
 		if r.state == chem.Measured && !whole(r.value) {
 			return reading{fault: notCount}
@@ -172,6 +176,9 @@ func (c *cells) problem(cell string, fault cellFault) problem.Problem {
 		p.Found += " is below absolute zero"
 		p.Expected = "a temperature"
 		p.Do = "list the text in missing if it means that there is none"
+	case notFraction:
+		p.Found += " is no fraction"
+		p.Expected = "a number from 0 to 1"
 	case notCount:
 		p.Found += " is no count"
 		p.Expected = "a whole number of 1 or more"

@@ -71,7 +71,7 @@ func TestUnits(t *testing.T) {
 	}{
 		{"T (K)", "1000", tables.PublishedC, 726.85}, {"T (C)", "726.85", tables.PublishedC, 726.85}, {"P (GPa)", "1.5", tables.PKbar, 15},
 		{"P (MPa)", "150", tables.PKbar, 1.5}, {"P (bar)", "1000", tables.PKbar, 1}, {"P (kbar)", "10", tables.PKbar, 10}, {"x (um)", "-12.5", tables.SpotXUm, -12.5},
-		{"n", "12", tables.NSpots, 12}, {"p_sigma_kbar", "0.5", tables.PSigmaKbar, 0.5}, {"published_p_kbar", "9", tables.PublishedPKbar, 9},
+		{"n", "12", tables.NSpots, 12}, {"area_fraction", "0.45", tables.AreaFraction, 0.45}, {"area_fraction", "1", tables.AreaFraction, 1}, {"area_fraction", "0", tables.AreaFraction, 0}, {"p_sigma_kbar", "0.5", tables.PSigmaKbar, 0.5}, {"published_p_kbar", "9", tables.PublishedPKbar, 9},
 	} {
 		all := mustRead(t, "", "Sample,Mineral,SiO2,"+c.header+"\nR1,Pl,60,"+c.cell+"\nR2,Pl,60,n.a.\n")
 		b, _ := all.At(0)

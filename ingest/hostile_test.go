@@ -30,11 +30,13 @@ phase = "Pl"`, []string{
 		`conditions.csv:2:8 (n): "1.5" is no count; expected a whole number of 1 or more`,
 		`conditions.csv:2:9 (x (um)): "a" is no number; expected a number with a decimal point; list the text in not_analysed, below_detection or missing if it means one of these`,
 		`conditions.csv:2:10 (published_kind): "guess"; expected experiment, thermometer or estimate`,
+		`conditions.csv:2:11 (area_fraction): "55" is no fraction; expected a number from 0 to 1`,
 		`conditions.csv:3:4 (SiO2 sigma): "<0.1" is a limit; expected a number with a decimal point; leave the cell empty if there is no number`,
 		`conditions.csv:3:5 (T (C)): "<700" is a limit; expected a number with a decimal point; leave the cell empty if there is no number`,
 		`conditions.csv:3:7 (P (kbar)): "<10" is a limit; expected a number with a decimal point; leave the cell empty if there is no number`,
 		`conditions.csv:3:8 (n): "0" is no count; expected a whole number of 1 or more`,
 		`conditions.csv:3:9 (x (um)): "1e309" is too large; expected a number below 1.8e308`,
+		`conditions.csv:3:11 (area_fraction): "-0.1" is no fraction; expected a number from 0 to 1`,
 	}},
 	{"decimal-comma.csv", "", []string{
 		`decimal-comma.csv:2:4 (SiO2): "60,1" is no number; expected a number with a decimal point; set decimal = "comma" if this source writes its decimals so`,

@@ -17,6 +17,7 @@ const (
 	limitRefused           // "<" where a limit means nothing
 	negative               // where nothing is below zero
 	tooCold                // below absolute zero
+	notFraction            // where only a share of the whole makes sense
 	notCount               // where only a count makes sense
 )
 

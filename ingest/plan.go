@@ -94,6 +94,7 @@ var uses = map[manifests.Quantity]use{
 	manifests.PSigmaKbar:      {role: numberCell, number: tables.PSigmaKbar},
 	manifests.NSpots:          {role: numberCell, number: tables.NSpots},
 	manifests.Total:           {role: numberCell, number: tables.ReportedTotal},
+	manifests.AreaFraction:    {role: numberCell, number: tables.AreaFraction},
 }
 
 func useOf(q manifests.Quantity) use {

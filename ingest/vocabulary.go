@@ -83,6 +83,7 @@ var plainStems = []struct {
 	{manifests.PBar, "p pressure", []string{"bar", "bars"}},
 	{manifests.PSigmaKbar, "psigma sigmap pressuresigma sigmapressure", kbar},
 	{manifests.NSpots, "n nspots nanalyses numberofspots numberofanalyses noofspots noofanalyses", noUnit},
+	{manifests.AreaFraction, "area", []string{"fraction", "frac", "proportion"}},
 	{manifests.Latitude, "latitude lat", degrees},
 	{manifests.Longitude, "longitude lon long", degrees},
 }

@@ -53,6 +53,7 @@ func TestVocabulary(t *testing.T) {
 		{chem.OxideWt, []string{"x (µm)", "X um", "x (μm)", "x_um", "stage x (um)", "spot_x_um"}, "x_um"},
 		{chem.OxideWt, []string{"y (µm)", "y_um"}, "y_um"},
 		{chem.OxideWt, []string{"n", "n_spots", "No. of analyses"}, "n_spots"},
+		{chem.OxideWt, []string{"Area fraction", "area_fraction", "Area (frac.)"}, "area_fraction"}, {chem.OxideWt, []string{"Area", "Area %"}, ""},
 		{chem.OxideWt, []string{"Latitude", "lat", "Lat (°)"}, "latitude"}, {chem.OxideWt, []string{"Longitude", "lon"}, "longitude"},
 		{chem.OxideWt, []string{"Locality"}, "locality"}, {chem.OxideWt, []string{"Unit", "rock unit"}, "unit"}, {chem.OxideWt, []string{"grain"}, "grain"},
 		{chem.OxideWt, []string{"session"}, "session"}, {chem.OxideWt, []string{"generation"}, "generation"}, {chem.OxideWt, []string{"assemblage"}, "assemblage"},

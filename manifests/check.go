@@ -21,6 +21,8 @@ func (r *reader) check(m *Manifest) {
 	r.within("qc.pyroxene_sum_kept", m.QC.PyroxeneSumKept, "qc.pyroxene_sum_flagged", m.QC.PyroxeneSumFlagged)
 	r.atMost("qc.feldspar_sum_kept", m.QC.FeldsparSumKept, "qc.feldspar_sum_flagged", m.QC.FeldsparSumFlagged)
 	r.atMost("qc.celsian_flagged", m.QC.CelsianFlagged, "qc.celsian_set_aside", m.QC.CelsianSetAside)
+	r.different("pairing.rules", m.Pairing.Rules)
+	r.atMost("pairing.touching_um", m.Pairing.TouchingUm, "pairing.nearest_um", m.Pairing.NearestUm)
 	r.different("methods.use", m.Methods.Use)
 	r.different("groups.by", m.Groups.By)
 }

@@ -18,8 +18,9 @@ func defaults() *Manifest {
 			PyroxeneSumKept: [2]float64{3.98, 4.04}, PyroxeneSumFlagged: [2]float64{3.96, 4.06},
 			CelsianFlagged: 0.01, CelsianSetAside: 0.05,
 		},
-		Pairing:  Pairing{Rule: "listed"},
-		Pressure: Pressure{DefaultSigmaKbar: 1.5},
+		Pairing:       Pairing{Rules: []string{"listed", "touching rims", "nearest"}, NearestUm: 500, TouchingUm: 50},
+		Reintegration: Reintegration{Volumes: "high"},
+		Pressure:      Pressure{DefaultSigmaKbar: 1.5},
 		Uncertainty: Uncertainty{
 			Seed: 1, OxideSigmaRelative: 0.007, OxideSigmaCountingWt: 0.0009, OxideSigmaFloorWt2: 0.0002,
 		},

@@ -28,6 +28,8 @@ type Manifest struct {
 	QC QC `toml:"qc" json:"qc"`
 	// How analyses become pairs.
 	Pairing Pairing `toml:"pairing" json:"pairing"`
+	// How exsolved feldspars are put together again.
+	Reintegration Reintegration `toml:"reintegration" json:"reintegration"`
 	// What pressure to take where a row states none.
 	Pressure Pressure `toml:"pressure" json:"pressure"`
 	// Which calibrations are worked out.
@@ -143,8 +145,19 @@ type QC struct {
 
 // Pairing says which analyses are taken as coexisting.
 type Pairing struct {
-	// "listed": analyses that share a pair label in one sample of one source. Default: listed.
-	Rule string `toml:"rule" json:"rule" jsonschema:"enum=listed"`
+	// The rules, tried in this order; an analysis is used by the first that pairs it. "listed": two analyses share a pair label in one sample of one source. "touching rims": two rims, each the other's nearest, at most touching_um apart. "nearest": two analyses of one texture, each the other's nearest, at most nearest_um apart. "means": the one mean of each phase, where a source has only means. "all combinations": every analysis of one phase with every one of the other. All but the first stay within one sample, domain, generation and texture. Default: listed, touching rims, nearest.
+	Rules []string `toml:"rules" json:"rules" jsonschema:"enum=listed,enum=touching rims,enum=nearest,enum=means,enum=all combinations"`
+	// How far apart on the stage two nearest analyses may lie, um. Default: 500 (common practice, no source).
+	NearestUm float64 `toml:"nearest_um" json:"nearest_um" jsonschema:"minimum=0,maximum=100000"`
+	// How far apart on the stage two rims may lie and count as touching, um. Default: 50 (common practice, no source).
+	TouchingUm float64 `toml:"touching_um" json:"touching_um" jsonschema:"minimum=0,maximum=100000"`
+}
+
+// Reintegration says how a feldspar that exsolved is put together again from
+// the compositions and area fractions of its parts.
+type Reintegration struct {
+	// Molar volumes that turn area fractions into moles: those of disordered ("high") or ordered ("low") feldspars. Default: high (Robie et al. 1978, from memory).
+	Volumes string `toml:"volumes" json:"volumes" jsonschema:"enum=high,enum=low"`
 }
 
 // Pressure says what to take where no row states one.

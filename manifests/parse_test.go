@@ -67,7 +67,9 @@ celsian_flagged = 0.01
 celsian_set_aside = 0.05
 
 [pairing]
-rule = "listed"
+rules = ["listed"]
+nearest_um = 400
+touching_um = 40
 
 [pressure]
 default_kbar = 8
@@ -84,6 +86,9 @@ oxide_sigma_floor_wt2 = 0.0002
 
 [groups]
 by = ["unit"]
+
+[reintegration]
+volumes = "low"
 `
 
 func parsed(t *testing.T, text string) *Manifest {
@@ -115,7 +120,7 @@ func TestParseReadsEveryKey(t *testing.T) {
 	}
 	// Every key of the struct is in the text, so that a key the reader cannot
 	// read shows here.
-	for path, want := range map[string]int{"source[0].file": 11, "methods.use[0]": 61, `source[0].columns."Ca"`: 31, "compilation": 2} {
+	for path, want := range map[string]int{"source[0].file": 11, "methods.use[0]": 63, `source[0].columns."Ca"`: 31, "compilation": 2} {
 		if line, _ := m.At(path); line != want {
 			t.Errorf("%s stands on line %d by At, want %d", path, line, want)
 		}
@@ -136,7 +141,7 @@ func TestDefaults(t *testing.T) {
 		`"not_analysed":["n.a.","na","n/a"],"below_detection":["b.d.l.","bdl","b.d.","bd","<dl"],"missing":[""]}],` +
 		`"normalisation":{"fe3":"as measured","end_member_tolerance":0.002},` +
 		`"qc":{"totals_kept_wt":[98,102],"totals_flagged_wt":[97,102.5],"feldspar_sum_kept":0.02,"feldspar_sum_flagged":0.05,"pyroxene_sum_kept":[3.98,4.04],"pyroxene_sum_flagged":[3.96,4.06],"celsian_flagged":0.01,"celsian_set_aside":0.05},` +
-		`"pairing":{"rule":"listed"},"pressure":{"default_sigma_kbar":1.5},"methods":{},` +
+		`"pairing":{"rules":["listed","touching rims","nearest"],"nearest_um":500,"touching_um":50},"reintegration":{"volumes":"high"},"pressure":{"default_sigma_kbar":1.5},"methods":{},` +
 		`"uncertainty":{"seed":1,"oxide_sigma_relative":0.007,"oxide_sigma_counting_wt":0.0009,"oxide_sigma_floor_wt2":0.0002},"groups":{}}`
 	if got := string(parsed(t, smallest).Canonical()); got != want {
 		t.Errorf("canonical form of the smallest manifest:\n got %s\nwant %s", got, want)
@@ -193,26 +198,30 @@ func TestProblems(t *testing.T) {
 		holds          []string
 	}{
 		{"unknown key", `licence = "CC0-1.0"`, `license = "CC0-1.0"`, "m.toml:6:1 (compilation.license)", []string{`unknown key "license"`, `did you mean "licence"?`}},
-		{"unknown key, nothing near", `rule = "listed"`, `zzzzzzzzzz = 1`, "m.toml:54:1", []string{"the keys here are rule"}},
-		{"unknown table", `[pressure]`, `[presure]`, "m.toml:56:2", []string{`did you mean "pressure"?`}},
+		{"unknown key, nothing near", `rules = ["listed"]`, `zzzzzzzzzz = 1`, "m.toml:54:1", []string{"the keys here are rules, nearest_um or touching_um"}},
+		{"rule of pairing not on the list", `rules = ["listed"]`, `rules = ["neares"]`, "m.toml:54:10", []string{`did you mean "nearest"?`}},
+		{"rule of pairing twice", `rules = ["listed"]`, `rules = ["listed", "listed"]`, "m.toml:54:20", []string{"leave one out"}},
+		{"touching farther than nearest", `touching_um = 40`, `touching_um = 401`, "m.toml:56:15", []string{"pairing.touching_um = 401 with pairing.nearest_um = 400"}},
+		{"volumes not on the list", `volumes = "low"`, `volumes = "lower"`, "m.toml:75:11", []string{`did you mean "low"?`}},
+		{"unknown table", `[pressure]`, `[presure]`, "m.toml:58:2", []string{`did you mean "pressure"?`}},
 		{"wrong type", `title = "Whole"`, `title = 7`, "m.toml:4:9", []string{"7; expected text in quotes", "put it in quotes"}},
-		{"number in quotes", `default_kbar = 8`, `default_kbar = "8"`, "m.toml:57:16", []string{`the text "8"; expected a number`, "without quotes"}},
-		{"text for a list", `by = ["unit"]`, `by = "unit"`, "m.toml:70:6", []string{"expected a list", `write ["unit"]`}},
+		{"number in quotes", `default_kbar = 8`, `default_kbar = "8"`, "m.toml:59:16", []string{`the text "8"; expected a number`, "without quotes"}},
+		{"text for a list", `by = ["unit"]`, `by = "unit"`, "m.toml:72:6", []string{"expected a list", `write ["unit"]`}},
 		{"nan", `celsian_flagged = 0.01`, `celsian_flagged = nan`, "m.toml:50:19", []string{"nan; expected a finite number"}},
 		{"inf", `celsian_flagged = 0.01`, `celsian_flagged = -inf`, "m.toml:50:19", []string{"-inf; expected a finite number"}},
-		{"too large to hold", `default_kbar = 8`, `default_kbar = 1e999`, "m.toml:57:16", []string{"1e999; expected a finite number"}},
+		{"too large to hold", `default_kbar = 8`, `default_kbar = 1e999`, "m.toml:59:16", []string{"1e999; expected a finite number"}},
 		{"date with a time", `date = 2026-11-30`, `date = 2026-11-30T12:00:00`, "m.toml:7:8", []string{"expected a date such as 2026-11-30", "leave out the time"}},
 		{"date with an offset", `date = 2026-11-30`, `date = 2026-11-30T12:00:00+01:00`, "m.toml:7:8", []string{"leave out the time"}},
 		{"date in quotes", `date = 2026-11-30`, `date = "2026-11-30"`, "m.toml:7:8", []string{"without quotes"}},
 		{"no day of the calendar", `date = 2026-11-30`, `date = 2026-11-31`, "m.toml:7:8", []string{"2026-11-31; expected a day of the calendar"}},
-		{"negative seed", `seed = 7`, `seed = -7`, "m.toml:64:8", []string{"expected a whole number from 0"}},
-		{"fraction for a whole number", `seed = 7`, `seed = 7.5`, "m.toml:64:8", []string{"7.5; expected a whole number"}},
+		{"negative seed", `seed = 7`, `seed = -7`, "m.toml:66:8", []string{"expected a whole number from 0"}},
+		{"fraction for a whole number", `seed = 7`, `seed = 7.5`, "m.toml:66:8", []string{"7.5; expected a whole number"}},
 		{"three limits", `[98.5, 101.5]`, `[98, 101, 102]`, "m.toml:44:1", []string{"a list of 3; expected a list of 2 numbers"}},
 		{"limits the wrong way round", `[98.5, 101.5]`, `[101.5, 98.5]`, "m.toml:44:1", []string{"write [98.5, 101.5]"}},
 		{"kept wider than flagged", `[98.5, 101.5]`, `[96, 101.5]`, "m.toml:44:1", []string{"qc.totals_kept_wt = [96, 101.5] with qc.totals_flagged_wt = [97, 102.5]"}},
 		{"kept wider than flagged, single", `celsian_flagged = 0.01`, `celsian_flagged = 0.1`, "m.toml:50:19", []string{"qc.celsian_flagged = 0.1 with qc.celsian_set_aside = 0.05"}},
-		{"key twice", `seed = 7`, "seed = 7\nseed = 8", "m.toml:65:1", []string{"a second time", "on line 64"}},
-		{"table twice", "[groups]", "[qc]\n[groups]", "m.toml:69:2", []string{"a second [qc]", "on line 43"}},
+		{"key twice", `seed = 7`, "seed = 7\nseed = 8", "m.toml:67:1", []string{"a second time", "on line 66"}},
+		{"table twice", "[groups]", "[qc]\n[groups]", "m.toml:71:2", []string{"a second [qc]", "on line 43"}},
 		{"single brackets", "[[source]]\nid = \"two\"", "[source]\nid = \"two\"", "m.toml:35:2", []string{"[source]; expected [[source]]"}},
 		{"double brackets", "[qc]", "[[qc]]", "m.toml:43:3", []string{"[[qc]]; expected [qc]"}},
 		{"missing key", "title = \"Whole\"\n", "", "m.toml:2:2 (compilation.title)", []string{"the key is missing", `write title = "..."`}},
@@ -238,13 +247,13 @@ func TestProblems(t *testing.T) {
 		{"oxygens without apfu", `composition = "apfu"`, `composition = "oxide wt%"`, "m.toml:17:11", nil},
 		{"cell text of two meanings", `missing = ["", "-999"]`, `missing = ["", "BD"]`, "m.toml:29:16", []string{`"BD" in below_detection and in missing`}},
 		{"empty text for not analysed", `not_analysed = ["-"]`, `not_analysed = [" "]`, "m.toml:27:1", []string{"an empty cell always counts as missing"}},
-		{"sigma below the least", `default_sigma_kbar = 2`, `default_sigma_kbar = 1`, "m.toml:58:22", []string{"1; expected a number from 1.5"}},
-		{"group not on the list", `by = ["unit"]`, `by = ["units"]`, "m.toml:70:7", []string{`did you mean "unit"?`}},
-		{"method twice", `use = ["two-feldspar/elkins-grove-1990"]`, `use = ["a", "a"]`, "m.toml:61:13", nil},
+		{"sigma below the least", `default_sigma_kbar = 2`, `default_sigma_kbar = 1`, "m.toml:60:22", []string{"1; expected a number from 1.5"}},
+		{"group not on the list", `by = ["unit"]`, `by = ["units"]`, "m.toml:72:7", []string{`did you mean "unit"?`}},
+		{"method twice", `use = ["two-feldspar/elkins-grove-1990"]`, `use = ["a", "a"]`, "m.toml:63:13", nil},
 		{"control characters in a text", `separator = "semicolon"`, `separator = "\u202e\u001b"`, "m.toml:13:13", []string{`\u{202e}\u{1b}`}},
-		{"no TOML", `rule = "listed"`, `rule = listed`, "m.toml:54:8", []string{"this is no TOML"}},
+		{"no TOML", `rules = ["listed"]`, `rules = listed`, "m.toml:54:9", []string{"this is no TOML"}},
 		{"no TOML beyond a character of two bytes", `locality = "L"`, `locality = "Ä" x`, "m.toml:21:16", []string{"this is no TOML"}},
-		{"no TOML across tables", "[groups]", "[compilation.date]\n[groups]", "m.toml:69:2", []string{"expected a date"}},
+		{"no TOML across tables", "[groups]", "[compilation.date]\n[groups]", "m.toml:71:2", []string{"expected a date"}},
 	} {
 		t.Run(c.what, func(t *testing.T) {
 			if strings.Count(whole, c.old) != 1 {
@@ -379,7 +388,8 @@ func TestFromCanonical(t *testing.T) {
 		"one limit":               {`[98,102]`, `[98]`},
 		"limit out of order":      {`[98,102]`, `[102,98]`},
 		"separator left out":      {`"separator":"comma",`, ``},
-		"rule emptied":            {`"rule":"listed"`, `"rule":""`},
+		"no such rule":            {`"rules":["listed",`, `"rules":["listing",`},
+		"volumes left out":        {`"volumes":"high"`, ``},
 		"sigma too small":         {`"default_sigma_kbar":1.5`, `"default_sigma_kbar":0`},
 		"file outside":            {`"a.csv"`, `"../a.csv"`},
 		"no source":               {`"source":[{`, `"source":[],"sourc":[{`},
@@ -426,7 +436,7 @@ func TestQuantities(t *testing.T) {
 			t.Errorf("ParseQuantity(%q) = %v, %v; want %v", name, got, err, q)
 		}
 	}
-	if n, want := len(seen), 31+2*int(chem.NumMeasurands); n != want {
+	if n, want := len(seen), 32+2*int(chem.NumMeasurands); n != want {
 		t.Errorf("%d quantities, want %d", n, want)
 	}
 	for name, want := range map[string]struct {

@@ -44,6 +44,7 @@ const (
 	Total                    // the total the source reports, number, wt%
 	Latitude                 // as given
 	Longitude                // as given
+	AreaFraction             // of a part of an exsolved grain, number, 0 to 1
 	firstValue               // measurands, then their 1-sigmas
 )
 
@@ -62,7 +63,7 @@ var plainNames = [firstValue]string{
 	PublishedPKbar: "published_p_kbar", PublishedKind: "published_kind",
 	PublishedMethod: "published_method", PKbar: "p_kbar", PGpa: "p_gpa", PMpa: "p_mpa",
 	PBar: "p_bar", PSigmaKbar: "p_sigma_kbar", NSpots: "n_spots", Total: "total",
-	Latitude: "latitude", Longitude: "longitude",
+	Latitude: "latitude", Longitude: "longitude", AreaFraction: "area_fraction",
 }
 
 var quantityByName = func() map[string]Quantity {

@@ -57,7 +57,7 @@ func generate(t *testing.T) []byte {
 		t.Fatal(err)
 	}
 	setDefaults(source, values["source"].([]any)[0].(map[string]any), "id", "file", "separator")
-	for table, definition := range map[string]string{"normalisation": "Normalisation", "qc": "QC", "pairing": "Pairing", "pressure": "Pressure", "uncertainty": "Uncertainty"} {
+	for table, definition := range map[string]string{"normalisation": "Normalisation", "qc": "QC", "pairing": "Pairing", "reintegration": "Reintegration", "pressure": "Pressure", "uncertainty": "Uncertainty"} {
 		setDefaults(s.Definitions[definition], values[table].(map[string]any))
 	}
 	out, err := json.MarshalIndent(s, "", "  ")

@@ -13,7 +13,7 @@ type Check struct {
 	Methods  []string        `json:"methods"` // that would be worked out
 	Analyses int             `json:"analyses"`
 	Pairs    map[string]int  `json:"pairs"`    // by kind
-	Unpaired int             `json:"unpaired"` // analyses whose pair label gave no pair
+	Unpaired int             `json:"unpaired"` // analyses that could have a partner and got none
 }
 
 // CheckInputs reads everything Run would read and says what it found. The error
@@ -35,10 +35,10 @@ func CheckInputs(path string) (*Check, error) {
 		return c, err
 	}
 	c.Analyses = s.all.Len()
-	pairs, without := pairing.Listed(s.all)
-	for _, p := range pairs {
+	result := pairing.Pairs(s.all, &m.Pairing)
+	for _, p := range result.Pairs {
 		c.Pairs[pairing.Kinds[p.Kind].Name]++
 	}
-	c.Unpaired = len(without)
+	c.Unpaired = len(result.Without)
 	return c, nil
 }

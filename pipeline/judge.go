@@ -123,6 +123,7 @@ func (s *state) analysisRow(b *tables.Batch, r int, c *chem.Composition, w *work
 	row.PublishedTC, row.PublishedSigmaC, row.PublishedPKbar = optional(tables.PublishedC), optional(tables.PublishedSigmaC), optional(tables.PublishedPKbar)
 	row.PKbar, row.PSigmaKbar = optional(tables.PKbar), optional(tables.PSigmaKbar)
 	row.NSpots, row.ReportedTotalWt = optional(tables.NSpots), optional(tables.ReportedTotal)
+	row.AreaFraction = optional(tables.AreaFraction)
 	s.composition(&row, b, r, c)
 	workedColumns(&row, c, w, b.EndMemberSum(r))
 	return row

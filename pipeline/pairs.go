@@ -1,6 +1,7 @@
 package pipeline
 
 import (
+	"strconv"
 	"strings"
 
 	"tieline/pipeline/lineage"
@@ -12,15 +13,19 @@ import (
 	"tieline/thermo/method"
 )
 
-// pairUp pairs the analyses and gives the findings on those that carry a pair
-// label and got no partner.
+// pairUp pairs the analyses and gives the findings on those that could have a
+// partner and got none.
 func (s *state) pairUp() (findings []tables.FindingRow) {
-	var without []pairing.Unpaired
-	s.pairs, without = pairing.Listed(s.all)
-	for _, u := range without {
+	result := pairing.Pairs(s.all, &s.manifest.Pairing)
+	s.pairs = result.Pairs
+	for i := range result.Without {
+		u := &result.Without[i]
 		b, row := s.all.At(int(u.Analysis))
-		findings = append(findings, s.findingRows("analysis", b.Text(tables.AnalysisID, row), u.Analysis,
-			[]qc.Finding{{Rule: "no partner", Effect: qc.Noted, Limit: "one of each", Detail: u.Why}})...)
+		f := qc.Finding{Rule: "no partner", Effect: qc.Noted, Value: finite(u.Um), Limit: "a partner", Detail: u.Why(s.all)}
+		if f.Value != nil {
+			f.Limit = strconv.FormatFloat(u.LimitUm, 'f', -1, 64) + " um"
+		}
+		findings = append(findings, s.findingRows("analysis", b.Text(tables.AnalysisID, row), u.Analysis, []qc.Finding{f})...)
 	}
 	s.pair = make([]pairState, len(s.pairs))
 	s.firstPair = make([]int32, s.all.Len())
@@ -72,14 +77,14 @@ func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
 	}
 	st.verdict, st.reasons = v, reasons
 	kind := pairing.Kinds[p.Kind]
-	st.lineage = lineage.New("tieline pair 1").Text(kind.Name).Text(s.manifest.Pairing.Rule).
+	st.lineage = lineage.New("tieline pair 1").Text(kind.Name).Text(p.Rule.String()).
 		Digest(a.Lineage(ra)).Digest(b.Lineage(rb)).Sum()
 
 	row := tables.PairRow{
 		PairID: s.pairID(i), PairKind: kind.Name, Source: a.Source, Sample: a.Text(tables.Sample, ra),
 		Locality: s.pairText(i, tables.Locality), Unit: s.pairText(i, tables.Unit), Texture: s.pairText(i, tables.Texture),
-		PairLabel: a.Text(tables.PairLabel, ra), AAnalysisID: a.Text(tables.AnalysisID, ra), APhase: string(a.Phase(ra)),
-		BAnalysisID: b.Text(tables.AnalysisID, rb), BPhase: string(b.Phase(rb)), Rule: s.manifest.Pairing.Rule,
+		PairLabel: s.pairLabel(i), AAnalysisID: a.Text(tables.AnalysisID, ra), APhase: string(a.Phase(ra)),
+		BAnalysisID: b.Text(tables.AnalysisID, rb), BPhase: string(b.Phase(rb)), Rule: p.Rule.String(), DistanceUm: finite(pairing.Distance(s.all, p.A, p.B)),
 		PSource: st.pressure.source, KdFeMg: seen.KD, Variant: variant,
 		Verdict: v.String(), Reasons: reasons, Lineage: st.lineage.String(),
 	}
@@ -154,9 +159,25 @@ func (s *state) beside(i int32, need chem.Phase) bool {
 	return false
 }
 
+// pairID names a pair by the label its rows share, or by its two analyses where
+// another rule paired them: names that stay when rows come or go elsewhere.
 func (s *state) pairID(i int) string {
 	a, ra := s.all.At(int(s.pairs[i].A))
-	return a.Source + "/" + a.Text(tables.Sample, ra) + "/" + a.Text(tables.PairLabel, ra) + ":" + pairing.Kinds[s.pairs[i].Kind].Name
+	name := s.pairLabel(i)
+	if name == "" {
+		b, rb := s.all.At(int(s.pairs[i].B))
+		name = strings.TrimPrefix(a.Text(tables.AnalysisID, ra), a.Source+"/") + "+" + strings.TrimPrefix(b.Text(tables.AnalysisID, rb), b.Source+"/")
+	}
+	return a.Source + "/" + a.Text(tables.Sample, ra) + "/" + name + ":" + pairing.Kinds[s.pairs[i].Kind].Name
+}
+
+// pairLabel is the label that made a pair, "" where another rule did.
+func (s *state) pairLabel(i int) string {
+	if s.pairs[i].Rule.String() != pairing.RuleListed {
+		return ""
+	}
+	a, ra := s.all.At(int(s.pairs[i].A))
+	return a.Text(tables.PairLabel, ra)
 }
 
 // pairText is what the pair's rows say: the common text, the one that is given,

@@ -136,7 +136,7 @@ func (s *state) startTrace(it item, row *tables.EstimateRow) *report.Trace {
 	t := &report.Trace{Method: row.Method, Component: row.Component, TC: row.TC, DTDP: row.DTDP, Reason: row.Reason,
 		PKbar: row.PKbar, PSource: row.PSource, Lineage: row.Lineage}
 	if it.pair >= 0 {
-		t.Pair = fmt.Sprintf("%s, rule %q, lineage %s", s.pairID(int(it.pair)), s.manifest.Pairing.Rule, s.pair[it.pair].lineage)
+		t.Pair = fmt.Sprintf("%s, rule %q, lineage %s", s.pairID(int(it.pair)), s.pairs[it.pair].Rule, s.pair[it.pair].lineage)
 	}
 	for _, x := range []int32{it.a, it.b} {
 		if x < 0 {

@@ -52,7 +52,7 @@ func printCheck(w io.Writer, c *pipeline.Check) {
 	for _, k := range pairing.Kinds {
 		fmt.Fprintf(w, ", %d %s pairs", c.Pairs[k.Name], k.Name)
 	}
-	fmt.Fprintf(w, "; %d analyses carry a pair label that gives no pair\n", c.Unpaired)
+	fmt.Fprintf(w, "; %d analyses could have a partner and have none\n", c.Unpaired)
 	fmt.Fprintf(w, "Methods: %s\n", strings.Join(c.Methods, ", "))
 }
 

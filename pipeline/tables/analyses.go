@@ -55,7 +55,7 @@ func (t Text) String() string { return textNames[t] }
 // composition.
 type Number uint8
 
-// The numbers: micrometres, degC, kbar, a count, wt%.
+// The numbers: micrometres, degC, kbar, a count, wt%, a fraction of an area.
 const (
 	SpotXUm Number = iota
 	SpotYUm
@@ -66,12 +66,13 @@ const (
 	PSigmaKbar
 	NSpots
 	ReportedTotal
+	AreaFraction
 	NumNumbers
 )
 
 var numberNames = [NumNumbers]string{
 	"spot_x_um", "spot_y_um", "published_t_c", "published_sigma_c", "published_p_kbar",
-	"p_kbar", "p_sigma_kbar", "n_spots", "reported_total_wt",
+	"p_kbar", "p_sigma_kbar", "n_spots", "reported_total_wt", "area_fraction",
 }
 
 func (n Number) String() string { return numberNames[n] }

@@ -27,6 +27,7 @@ type AnalysisRow struct {
 	SpotXUm           *float64 `parquet:"spot_x_um,optional" unit:"um" doc:"Stage x of the spot in its domain; NULL where not given"`
 	SpotYUm           *float64 `parquet:"spot_y_um,optional" unit:"um" doc:"Stage y of the spot in its domain; NULL where not given"`
 	NSpots            *float64 `parquet:"n_spots,optional" unit:"count" doc:"Number of spots a reported mean is of; NULL where not given"`
+	AreaFraction      *float64 `parquet:"area_fraction,optional" unit:"1" doc:"Share of an exsolved grain's area that the part analysed takes up, as the source gives it; NULL where not given"`
 	Locality          string   `parquet:"locality,optional" doc:"Locality of the sample as the source names it; NULL where not given"`
 	Unit              string   `parquet:"unit,optional" doc:"Geological unit of the sample as the source names it; NULL where not given"`
 	Latitude          string   `parquet:"latitude,optional" doc:"Latitude as the source writes it; NULL where not given"`
@@ -179,19 +180,19 @@ func (r *AnalysisRow) Cation(c chem.Cation) **float64 {
 
 // PairRow is one pair of analyses taken as coexisting: the ends of a tie line.
 type PairRow struct {
-	PairID        string   `parquet:"pair_id" doc:"The pair's name in this compilation: source/sample/pair label:pair kind"`
-	PairKind      string   `parquet:"pair_kind" doc:"The pair's two phases: two-feldspar or two-pyroxene"`
+	PairID        string   `parquet:"pair_id" doc:"The pair's name in this compilation: source/sample/pair label:pair kind; where no label made the pair the two analysis_ids without their source, joined by +, stand in for the label"`
+	PairKind      string   `parquet:"pair_kind" doc:"The pair's two phases: two-feldspar, two-pyroxene, or alkali-feldspar-solvus (the two feldspars of one exsolved grain)"`
 	Source        string   `parquet:"source" doc:"Id of the source both analyses come from"`
 	Sample        string   `parquet:"sample" doc:"Sample both analyses belong to"`
 	Locality      string   `parquet:"locality,optional" doc:"Locality of the sample as the source names it; NULL where not given"`
 	Unit          string   `parquet:"unit,optional" doc:"Geological unit of the sample as the source names it; NULL where not given"`
 	Texture       string   `parquet:"texture,optional" doc:"Textural position of the pair, of a and b where they differ; NULL where not given"`
-	PairLabel     string   `parquet:"pair_label,optional" doc:"The label the two analyses share; NULL where the rule needs none"`
-	AAnalysisID   string   `parquet:"a_analysis_id" doc:"analysis_id of the first end: alkali feldspar, or orthopyroxene"`
+	PairLabel     string   `parquet:"pair_label,optional" doc:"The label that made the pair; NULL where another rule did"`
+	AAnalysisID   string   `parquet:"a_analysis_id" doc:"analysis_id of the first end: alkali feldspar, orthopyroxene, or the Na side of an exsolved feldspar"`
 	APhase        string   `parquet:"a_phase" doc:"Mineral symbol of the first end"`
-	BAnalysisID   string   `parquet:"b_analysis_id" doc:"analysis_id of the second end: plagioclase, or clinopyroxene"`
+	BAnalysisID   string   `parquet:"b_analysis_id" doc:"analysis_id of the second end: plagioclase, clinopyroxene, or the K side of an exsolved feldspar"`
 	BPhase        string   `parquet:"b_phase" doc:"Mineral symbol of the second end"`
-	Rule          string   `parquet:"rule" doc:"The rule that paired them: listed, they share a pair label in one sample of one source"`
+	Rule          string   `parquet:"rule" doc:"The rule that paired them: listed (they share a pair label in one sample of one source), touching rims or nearest (each is the other's nearest on the stage, within the manifest's limit), means (the one mean of each phase), all combinations; all but listed within one domain, generation and texture"`
 	DistanceUm    *float64 `parquet:"distance_um,optional" unit:"um" doc:"Distance between the two spots on the stage; NULL where either has no coordinates or their domains differ"`
 	PKbar         *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the pair is evaluated at; NULL where none is known"`
 	PSigmaKbar    *float64 `parquet:"p_sigma_kbar,optional" unit:"kbar" doc:"1-sigma of p_kbar; NULL where none is known"`

@@ -415,7 +415,7 @@ var columnNames = map[string]string{
 }
 
 func TestColumnsAreThePromisedOnes(t *testing.T) {
-	analyses := "analysis_id source source_line source_column? label? sample phase phase_text texture? domain? generation? assemblage? analysis_kind? grain? session? spot_x_um? spot_y_um? n_spots? locality? unit? latitude? longitude? composition_kind"
+	analyses := "analysis_id source source_line source_column? label? sample phase phase_text texture? domain? generation? assemblage? analysis_kind? grain? session? spot_x_um? spot_y_um? n_spots? area_fraction? locality? unit? latitude? longitude? composition_kind"
 	for o := range chem.NumOxides {
 		n := strings.ToLower(o.String())
 		analyses += " " + n + "_wt? " + n + "_sigma_wt?"
