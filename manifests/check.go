@@ -21,10 +21,24 @@ func (r *reader) check(m *Manifest) {
 	r.within("qc.pyroxene_sum_kept", m.QC.PyroxeneSumKept, "qc.pyroxene_sum_flagged", m.QC.PyroxeneSumFlagged)
 	r.atMost("qc.feldspar_sum_kept", m.QC.FeldsparSumKept, "qc.feldspar_sum_flagged", m.QC.FeldsparSumFlagged)
 	r.atMost("qc.celsian_flagged", m.QC.CelsianFlagged, "qc.celsian_set_aside", m.QC.CelsianSetAside)
+	r.line(&m.Pressure)
 	r.different("pairing.rules", m.Pairing.Rules)
 	r.atMost("pairing.touching_um", m.Pairing.TouchingUm, "pairing.nearest_um", m.Pairing.NearestUm)
 	r.different("methods.use", m.Methods.Use)
 	r.different("groups.by", m.Groups.By)
+}
+
+// line checks that a pressure line is whole and alone.
+func (r *reader) line(p *Pressure) {
+	const at0, slope, flat = "pressure.line_kbar_at_0c", "pressure.line_kbar_per_c", "pressure.default_kbar"
+	switch {
+	case p.LineKbarAt0C != nil && p.LineKbarPerC == nil:
+		r.complain(at0, r.at[at0], "missing key", "line_kbar_per_c beside it", "half a line", "write line_kbar_per_c, kbar/degC")
+	case p.LineKbarPerC != nil && p.LineKbarAt0C == nil:
+		r.complain(slope, r.at[slope], "missing key", "line_kbar_at_0c beside it", "half a line", "write line_kbar_at_0c, kbar")
+	case p.LineKbarAt0C != nil && p.DefaultKbar != nil:
+		r.complain(flat, r.at[flat], "contradiction", "default_kbar or a line", "both", "leave one out")
+	}
 }
 
 // fields checks a struct's fields against their tags, as the schema does.

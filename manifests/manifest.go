@@ -166,7 +166,17 @@ type Pressure struct {
 	DefaultKbar *float64 `toml:"default_kbar" json:"default_kbar,omitempty" jsonschema:"minimum=0,maximum=500"`
 	// Its 1-sigma, kbar, at least 1.5. Default: 1.5 (common practice, no source).
 	DefaultSigmaKbar float64 `toml:"default_sigma_kbar" json:"default_sigma_kbar" jsonschema:"minimum=1.5,maximum=500"`
+	// Pressure as a straight line in temperature instead of default_kbar, P = line_kbar_at_0c + line_kbar_per_c T(degC): kbar at 0 degC. It is solved together with each method, and its estimates are flagged "assumed pressure". No default.
+	LineKbarAt0C *float64 `toml:"line_kbar_at_0c" json:"line_kbar_at_0c,omitempty" jsonschema:"minimum=-500,maximum=500"`
+	// The line's slope, kbar/degC; required with line_kbar_at_0c. No default.
+	LineKbarPerC *float64 `toml:"line_kbar_per_c" json:"line_kbar_per_c,omitempty" jsonschema:"minimum=0,maximum=1"`
 }
+
+// OnLine says whether pressures that no row states follow a line in temperature.
+func (p *Pressure) OnLine() bool { return p.LineKbarAt0C != nil && p.LineKbarPerC != nil }
+
+// LineAt is the line's pressure at c degC, kbar.
+func (p *Pressure) LineAt(c float64) float64 { return *p.LineKbarAt0C + float64(*p.LineKbarPerC*c) }
 
 // Methods says which calibrations are worked out.
 type Methods struct {

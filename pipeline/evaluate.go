@@ -32,6 +32,8 @@ const needsPressureAbove = 1.0
 const (
 	statusNumber   = "number"
 	statusNoNumber = "no number"
+	statusAtMost   = "at most"  // bound_c is an upper bound
+	statusAtLeast  = "at least" // bound_c is a lower bound
 )
 
 // item is one thing a temperature is taken from: a pair, or one analysis.
@@ -47,13 +49,20 @@ type kind struct {
 	items   []item
 	methods []*method.Method
 	leaves  []*method.Quantity
-	lanes   []discrepancy.Lane // one per method and component, then as-published; T filled by the evaluation
+	lanes   []discrepancy.Lane // one per method and component, then as-published by kind; T filled by the evaluation
 
 	fe3Basis []string // per lane of a method
+	// outside marks, per lane and item, a number that stays out of the samples
+	// table: set aside, or out of range in composition.
+	outside [][]bool
 }
 
+// publishedKinds are what a published temperature may be; each has a lane of
+// its own, since an experiment and an author's estimate are not one method.
+var publishedKinds = []string{"experiment", "thermometer", "estimate", ""}
+
 // laneCount is the number of lanes of methods, as-published not counted.
-func (k *kind) laneCount() int { return len(k.lanes) - 1 }
+func (k *kind) laneCount() int { return len(k.lanes) - len(publishedKinds) }
 
 // kinds sorts pairs and single analyses by what methods read: first the kinds
 // of pair, then the single phases in the order of the methods.
@@ -108,13 +117,16 @@ func (k *kind) prepare(methods []*method.Method) {
 			}
 		}
 		for _, c := range m.Components {
-			k.lanes = append(k.lanes, discrepancy.Lane{Method: m.ID, Component: c, Info: &m.Info, Own: true})
+			k.lanes = append(k.lanes, discrepancy.Lane{Method: m.ID, Component: c, Variant: m.Variant, Info: &m.Info, Own: true})
 			k.fe3Basis = append(k.fe3Basis, m.IronConvention())
 		}
 	}
-	k.lanes = append(k.lanes, discrepancy.Lane{Method: discrepancy.AsPublished})
+	for _, p := range publishedKinds {
+		k.lanes = append(k.lanes, discrepancy.Lane{Method: discrepancy.AsPublished, PublishedKind: p})
+	}
 	for i := range k.lanes {
 		k.lanes[i].T = slices.Repeat([]float64{math.NaN()}, len(k.items))
+		k.outside = append(k.outside, make([]bool, len(k.items)))
 	}
 	k.leaves = method.Leaves(needs)
 }
@@ -127,6 +139,9 @@ type evaluator struct {
 	at    [3][]method.Lane // at P, P - step, P + step, for one method
 	sides [2]side
 	p     []pressure
+	from  int // the block's first item
+
+	alone *method.Block // one row, for bounds
 }
 
 // side is one analysis of an item, ready to fill leaves from.
@@ -157,19 +172,25 @@ func (v *verdicts) add(w verdicts) {
 }
 
 func (s *state) newEvaluator(k *kind) *evaluator {
-	return &evaluator{s: s, k: k, block: method.NewBlock(0)}
+	return &evaluator{s: s, k: k, block: method.NewBlock(0), alone: method.NewBlock(1)}
 }
 
 // evaluate works out items [from, to) of the kind: estimates, findings, and the
 // lanes' temperatures for the discrepancies.
 func (e *evaluator) evaluate(from, to int) result {
 	var r result
+	e.from = from
 	e.fill(from, to)
 	lane := 0
 	estimates := make([][]estimate, e.k.laneCount())
 	for _, m := range e.k.methods {
 		for c, est := range e.method(m, to-from) {
 			estimates[lane+c] = est
+			for i := range est {
+				if est[i].why == method.NonPositiveLog {
+					e.bound(m, c, from+i, &est[i])
+				}
+			}
 		}
 		lane += len(m.Components)
 	}
@@ -194,18 +215,9 @@ func (e *evaluator) fill(from, to int) {
 	e.p = e.p[:0]
 	for i := range n {
 		it := e.k.items[from+i]
-		b, row := e.s.all.At(int(it.a))
-		e.sides[0].load(b, row)
-		if it.b >= 0 {
-			b, row = e.s.all.At(int(it.b))
-			e.sides[1].load(b, row)
-		}
+		e.loadSides(it)
 		for j, q := range e.k.leaves {
-			d := &e.sides[0]
-			if q.Leaf.Phase != e.k.roles[0] {
-				d = &e.sides[1]
-			}
-			values[j][i], reasons[j][i] = d.reader.Leaf(q.Leaf)
+			values[j][i], reasons[j][i] = e.sideOf(q).reader.Leaf(q.Leaf)
 		}
 		p := e.s.itemPressure(it)
 		e.p = append(e.p, p)
@@ -232,26 +244,31 @@ func (s *state) itemPressure(it item) pressure {
 // estimate is one temperature before it becomes a row.
 type estimate struct {
 	c, dTdP    float64 // degC, degC/kbar; meaningful where why is OK
+	kbar       float64 // the pressure it was taken at; meaningful where one is given
 	why        method.Reason
 	outOf      []*method.Bound
 	outOfValue []float64
+	status     string  // statusAtMost or statusAtLeast where there is a bound, else ""
+	bound      float64 // degC
 }
 
 // method evaluates m at P and at P -+ 100 bar, and gives per component the
-// block's estimates.
+// block's estimates. Where pressure follows a line in T, each component finds
+// its own.
 func (e *evaluator) method(m *method.Method, n int) [][]estimate {
 	for i := range e.at {
 		e.at[i] = method.NewLanes(m, n)
 	}
-	m.Evaluate(e.block, e.at[0])
-	e.shift(-pressureStep)
-	m.Evaluate(e.block, e.at[1])
-	e.shift(2 * pressureStep)
-	m.Evaluate(e.block, e.at[2])
-	e.shift(-pressureStep)
-
 	out := make([][]estimate, len(m.Components))
+	onLine := slices.ContainsFunc(e.p, func(p pressure) bool { return p.source == pFromLine })
+	if !onLine {
+		e.around(m)
+	}
 	for c := range out {
+		if onLine {
+			e.followLine(m, c)
+			e.around(m)
+		}
 		out[c] = make([]estimate, n)
 		for i := range n {
 			out[c][i] = e.estimate(m, c, i)
@@ -259,6 +276,55 @@ func (e *evaluator) method(m *method.Method, n int) [][]estimate {
 	}
 	return out
 }
+
+// around evaluates m at the block's pressures and either side of them.
+func (e *evaluator) around(m *method.Method) {
+	m.Evaluate(e.block, e.at[0])
+	e.shift(-pressureStep)
+	m.Evaluate(e.block, e.at[1])
+	e.shift(2 * pressureStep)
+	m.Evaluate(e.block, e.at[2])
+	e.shift(-pressureStep)
+}
+
+// lineRounds and lineTolerance end the search for the pressure on a line: the
+// step is contracting for any crustal or mantle gradient, by a factor of slope
+// times dT/dP, some 0.3 at most.
+const (
+	lineRounds             = 200
+	lineTolerance chem.Bar = 1e-6
+)
+
+// followLine puts each row that lies on the manifest's line P(T) at the
+// pressure where component c of m meets the line. A row whose temperature and
+// line do not meet keeps the last pressure tried, and estimate finds it off the
+// line.
+func (e *evaluator) followLine(m *method.Method, c int) {
+	line := &e.s.manifest.Pressure
+	for i, p := range e.p {
+		if p.source == pFromLine {
+			e.block.P[i] = chem.Kbar(line.LineAt(lineStartC)).Bar()
+		}
+	}
+	for range lineRounds {
+		m.Evaluate(e.block, e.at[0])
+		moved := false
+		for i, p := range e.p {
+			if p.source != pFromLine || e.at[0][c].Why[i] != method.OK {
+				continue
+			}
+			next := chem.Kbar(line.LineAt(float64(e.at[0][c].T[i].Celsius()))).Bar()
+			moved = moved || next-e.block.P[i] > lineTolerance || e.block.P[i]-next > lineTolerance
+			e.block.P[i] = next
+		}
+		if !moved {
+			return
+		}
+	}
+}
+
+// lineStartC is where the search starts, degC.
+const lineStartC = 800
 
 func (e *evaluator) shift(by chem.Bar) {
 	for i := range e.block.P {
@@ -268,9 +334,14 @@ func (e *evaluator) shift(by chem.Bar) {
 
 func (e *evaluator) estimate(m *method.Method, c, i int) estimate {
 	at, below, above := &e.at[0][c], &e.at[1][c], &e.at[2][c]
-	est := estimate{why: at.Why[i], c: float64(at.T[i].Celsius())}
+	est := estimate{why: at.Why[i], c: float64(at.T[i].Celsius()), kbar: float64(e.block.P[i].Kbar())}
 	if est.why == method.OK && (math.IsNaN(est.c) || math.IsInf(est.c, 0)) {
 		est.why = method.NotFinite
+	}
+	if e.p[i].source == pFromLine && est.why == method.OK {
+		if off := est.kbar - e.s.manifest.Pressure.LineAt(est.c); !(math.Abs(off) < 1e-6) {
+			est.why = method.OffTheLine
+		}
 	}
 	if est.why != method.OK {
 		return est
@@ -283,8 +354,40 @@ func (e *evaluator) estimate(m *method.Method, c, i int) estimate {
 		est.why = method.NeedsPressure
 		return est
 	}
+	if e.tooUncertain(m, c, i) {
+		est.why = method.TooUncertain
+		return est
+	}
 	e.bounds(m, i, &est)
 	return est
+}
+
+// tooUncertain says whether the source gives a 1-sigma by which a component the
+// temperature hangs on is not known.
+func (e *evaluator) tooUncertain(m *method.Method, c, i int) bool {
+	for _, p := range m.Precise {
+		if p.Component != m.Components[c] {
+			continue
+		}
+		it := e.k.items[e.from+i]
+		analysis := it.a
+		if e.sideOf(p.Leaf) == &e.sides[1] {
+			analysis = it.b
+		}
+		b, row := e.s.all.At(int(analysis))
+		for _, x := range formula.Measurands(b.Kind, p.Leaf.Leaf) {
+			sigma := b.Sigma(x, row)
+			if sigma <= 0 {
+				continue // the source gives none
+			}
+			var composition chem.Composition
+			b.Composition(row, &composition)
+			if v := composition.Amount(x); v > 0 && sigma/v > p.MaxRelative {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // bounds lists what the estimate is outside of. Without a pressure that bound
@@ -303,7 +406,7 @@ func (e *evaluator) bounds(m *method.Method, i int, est *estimate) {
 			if !e.p[i].given() {
 				continue
 			}
-			v = e.p[i].kbar
+			v = est.kbar
 		}
 		if v < b.Min || v > b.Max {
 			est.outOf = append(est.outOf, b)
@@ -316,15 +419,20 @@ func (e *evaluator) bounds(m *method.Method, i int, est *estimate) {
 func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 	l := &e.k.lanes[lane]
 	it := e.k.items[i]
-	row := e.s.estimateRow(e.k, it, l.Method, l.Component)
-	info := l.Info
-	row.Fe3Basis = e.k.fe3Basis[lane]
-	row.Standing = string(info.Standing)
 	p := e.s.itemPressure(it)
-	row.Lineage = e.s.estimateLineage(it, e.s.digests[info.ID], l.Component, p).String()
+	if p.given() {
+		p.kbar = est.kbar
+	}
+	row := e.s.estimateRow(e.k, it, l, p)
+	row.Fe3Basis = e.k.fe3Basis[lane]
+	row.Standing = string(l.Info.Standing)
+	row.Lineage = e.s.estimateLineage(it, e.s.digests[l.Info], l.Component, p).String()
 	from, why := e.s.parentVerdict(it)
 	if est.why != method.OK {
 		row.Status, row.Reason = statusNoNumber, est.why.String()
+		if est.status != "" {
+			row.Status, row.BoundC = est.status, &est.bound
+		}
 		row.Verdict = qc.SetAsideRow.String()
 		r.counts[qc.SetAsideRow]++
 		r.rows = append(r.rows, row)
@@ -343,6 +451,7 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 	if v != qc.SetAsideRow {
 		l.T[i] = est.c
 	}
+	e.k.outside[lane][i] = v == qc.SetAsideRow || slices.ContainsFunc(est.outOf, func(b *method.Bound) bool { return b.Composition })
 }
 
 // emitPublished makes the row of the published temperature, if there is one.
@@ -352,16 +461,22 @@ func (e *evaluator) emitPublished(r *result, i int) {
 	if !pub.given {
 		return
 	}
-	row := e.s.estimateRow(e.k, it, discrepancy.AsPublished, "")
+	p := e.s.itemPressure(it)
+	if p.source == pFromLine {
+		p.kbar = e.s.manifest.Pressure.LineAt(pub.c)
+	}
+	lane := e.k.laneCount() + max(0, slices.Index(publishedKinds, pub.kind))
+	row := e.s.estimateRow(e.k, it, &e.k.lanes[lane], p)
 	row.TC, row.PublishedKind, row.Status = &pub.c, pub.kind, statusNumber
 	v, why := e.s.parentVerdict(it)
 	row.Verdict, row.Reason = v.String(), why
-	row.Lineage = e.s.estimateLineage(it, lineage.Digest{}, discrepancy.AsPublished, e.s.itemPressure(it)).String()
+	row.Lineage = e.s.estimateLineage(it, lineage.Digest{}, discrepancy.AsPublished, p).String()
 	r.counts[v]++
 	r.rows = append(r.rows, row)
 	if v != qc.SetAsideRow {
-		e.k.lanes[e.k.laneCount()].T[i] = pub.c
+		e.k.lanes[lane].T[i] = pub.c
 	}
+	e.k.outside[lane][i] = v == qc.SetAsideRow
 }
 
 func (s *state) itemPublished(it item) published {
@@ -392,7 +507,10 @@ func (s *state) estimateLineage(it item, digest lineage.Digest, component string
 		e.Digest(b.Lineage(row))
 	}
 	e.Digest(digest).Text(component).Text(p.source)
-	if p.given() {
+	switch {
+	case p.source == pFromLine:
+		e.Float(*s.manifest.Pressure.LineKbarAt0C).Float(*s.manifest.Pressure.LineKbarPerC)
+	case p.given():
 		e.Float(p.kbar)
 	}
 	return e.Sum()

@@ -88,7 +88,7 @@ func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
 		PSource: st.pressure.source, KdFeMg: seen.KD, Variant: variant,
 		Verdict: v.String(), Reasons: reasons, Lineage: st.lineage.String(),
 	}
-	if st.pressure.given() {
+	if st.pressure.given() && st.pressure.source != pFromLine {
 		row.PKbar = &st.pressure.kbar
 		if st.pressure.sigma > 0 {
 			row.PSigmaKbar = &st.pressure.sigma

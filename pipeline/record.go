@@ -44,6 +44,7 @@ type RecordSource struct {
 // RecordMethod is one method as it was used.
 type RecordMethod struct {
 	ID       string          `json:"id"`
+	Variant  string          `json:"variant,omitempty"` // "" on the calibration's own basis
 	Standing method.Standing `json:"standing"`
 	Digest   string          `json:"digest"` // constants and outputs on the fixed probe
 	Ref      string          `json:"ref"`
@@ -82,7 +83,7 @@ func recordSources(sources []ingest.Source) []RecordSource {
 func (s *state) recordMethods() []RecordMethod {
 	out := []RecordMethod{}
 	for _, m := range s.methods {
-		out = append(out, RecordMethod{m.ID, m.Standing, s.digests[m.ID].String(), m.Ref})
+		out = append(out, RecordMethod{m.ID, m.Variant, m.Standing, s.digests[&m.Info].String(), m.Ref})
 	}
 	return out
 }

@@ -10,29 +10,44 @@ import (
 
 // estimateRow starts the row of one temperature with what it shares with every
 // other of its item.
-func (s *state) estimateRow(k *kind, it item, methodID, component string) tables.EstimateRow {
+func (s *state) estimateRow(k *kind, it item, l *discrepancy.Lane, p pressure) tables.EstimateRow {
 	b, r := s.all.At(int(it.a))
 	row := tables.EstimateRow{
 		Sample: b.Text(tables.Sample, r), Locality: s.itemText(it, tables.Locality), Unit: s.itemText(it, tables.Unit),
-		Texture: s.itemText(it, tables.Texture), Variant: variant, PairKind: k.name, Method: methodID, Component: component,
+		Texture: s.itemText(it, tables.Texture), Variant: variantName(l.Variant), PairKind: k.name, Method: l.Method, Component: l.Component,
+		PSource: p.source,
 	}
-	id := b.Text(tables.AnalysisID, r)
+	id := s.itemID(it)
 	if it.pair >= 0 {
-		id = s.pairID(int(it.pair))
 		row.PairID = id
 	} else {
 		row.AnalysisID = id
 	}
-	row.EstimateID = id + "|" + methodID
-	if component != "" {
-		row.EstimateID += "|" + component
-	}
-	p := s.itemPressure(it)
-	row.PSource = p.source
+	row.EstimateID = id + laneSuffix(l)
 	if p.given() {
 		row.PKbar = &p.kbar
 	}
 	return row
+}
+
+// laneSuffix is what follows the pair or analysis in an estimate_id: |method,
+// then |component and |variant where there are any.
+func laneSuffix(l *discrepancy.Lane) string {
+	s := "|" + l.Method
+	for _, part := range []string{l.Component, l.Variant} {
+		if part != "" {
+			s += "|" + part
+		}
+	}
+	return s
+}
+
+// variantName is a lane's variant as tables name it.
+func variantName(v string) string {
+	if v == "" {
+		return variant
+	}
+	return v
 }
 
 // qcEstimate gathers what the rules on estimates look at.
@@ -40,7 +55,7 @@ func (s *state) qcEstimate(k *kind, it item, l *discrepancy.Lane, est *estimate,
 	b, _ := s.all.At(int(it.a))
 	e := &qc.Estimate{
 		Info: l.Info, Component: l.Component, OutOf: est.outOf, OutOfValue: est.outOfValue,
-		Assumed: p.source == pFromManifest, PKbar: p.kbar, Setting: s.settings[b.Source], Beside: true,
+		Assumed: p.source == pFromManifest || p.source == pFromLine, PKbar: p.kbar, Setting: s.settings[b.Source], Beside: true,
 	}
 	if need := l.Info.NeedsBeside; need != "" {
 		e.Beside = s.beside(it.a, need)

@@ -8,6 +8,7 @@ import (
 	"os"
 	"path/filepath"
 	"runtime"
+	"slices"
 
 	"tieline/ingest"
 	"tieline/manifests"
@@ -116,6 +117,12 @@ func runInto(m *manifests.Manifest, root *os.Root, dir string, opt Options) (*Re
 	}
 	counts = append(counts, count("estimates", v))
 	log.stage("estimates", v[0]+v[1]+v[2])
+
+	samples := s.samples(kinds)
+	if err := w.samples.Write(samples); err != nil {
+		return nil, err
+	}
+	log.stage("samples", int64(len(samples)))
 
 	found := s.discrepancies(kinds)
 	if err := w.discrepancies.Write(found); err != nil {
@@ -227,6 +234,7 @@ type writers struct {
 	analyses      *tables.Writer[tables.AnalysisRow]
 	pairs         *tables.Writer[tables.PairRow]
 	estimates     *tables.Writer[tables.EstimateRow]
+	samples       *tables.Writer[tables.SampleRow]
 	discrepancies *tables.Writer[tables.DiscrepancyRow]
 	qc            *tables.Writer[tables.FindingRow]
 	done          bool
@@ -234,11 +242,12 @@ type writers struct {
 
 func createWriters(dir string) (*writers, error) {
 	w := &writers{}
-	var errs [5]error
+	var errs [6]error
 	w.analyses, errs[0] = tables.Create[tables.AnalysisRow](dir, "analyses")
 	w.pairs, errs[1] = tables.Create[tables.PairRow](dir, "pairs")
 	w.estimates, errs[2] = tables.Create[tables.EstimateRow](dir, "estimates")
 	w.discrepancies, errs[3] = tables.Create[tables.DiscrepancyRow](dir, "discrepancies")
+	w.samples, errs[5] = tables.Create[tables.SampleRow](dir, "samples")
 	w.qc, errs[4] = tables.Create[tables.FindingRow](dir, "qc")
 	return w, errors.Join(errs[:]...)
 }
@@ -248,7 +257,7 @@ func (w *writers) finish() ([]tables.Written, error) {
 	w.done = true
 	var out []tables.Written
 	var errs []error
-	for _, c := range []func() (tables.Written, error){w.analyses.Close, w.pairs.Close, w.estimates.Close, w.discrepancies.Close, w.qc.Close} {
+	for _, c := range []func() (tables.Written, error){w.analyses.Close, w.pairs.Close, w.estimates.Close, w.samples.Close, w.discrepancies.Close, w.qc.Close} {
 		t, err := c()
 		out, errs = append(out, t), append(errs, err)
 	}
@@ -269,7 +278,7 @@ func (s *state) discrepancies(kinds []*kind) []tables.DiscrepancyRow {
 		if len(k.items) == 0 {
 			continue
 		}
-		rows := &discrepancy.Rows{PairKind: k.name, Variant: variant, Lanes: s.comparable(k, kinds)}
+		rows := &discrepancy.Rows{PairKind: k.name, Lanes: s.comparable(k, kinds)}
 		all := make([]string, len(k.items))
 		for i, it := range k.items {
 			b, r := s.all.At(int(it.a))
@@ -281,7 +290,22 @@ func (s *state) discrepancies(kinds []*kind) []tables.DiscrepancyRow {
 		for _, by := range s.manifest.Groups.By {
 			groupings = append(groupings, discrepancy.Grouping{By: by, Group: s.groupOf(k, by)})
 		}
-		out = append(out, discrepancy.Compare(rows, groupings)...)
+		for _, v := range variantsOf(rows.Lanes) {
+			rows.Of, rows.Variant = v, variantName(v)
+			out = append(out, discrepancy.Compare(rows, groupings)...)
+		}
+	}
+	return out
+}
+
+// variantsOf lists the variants of lanes, the plain one first, the others as
+// they come.
+func variantsOf(lanes []discrepancy.Lane) []string {
+	out := []string{""}
+	for _, l := range lanes {
+		if !slices.Contains(out, l.Variant) {
+			out = append(out, l.Variant)
+		}
 	}
 	return out
 }
@@ -303,7 +327,7 @@ func (s *state) comparable(k *kind, kinds []*kind) []discrepancy.Lane {
 			lanes = append(lanes, l.Through(k.memberRows(single.roles[0], of)))
 		}
 	}
-	return append(lanes, k.lanes[n])
+	return append(lanes, k.lanes[n:]...)
 }
 
 // memberRows gives, per item, the row of its member of a role in another kind, -1 for none.

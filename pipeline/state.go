@@ -8,6 +8,7 @@ import (
 	"tieline/qc"
 	"tieline/thermo"
 	"tieline/thermo/chem"
+	"tieline/thermo/formula"
 	"tieline/thermo/method"
 )
 
@@ -19,6 +20,7 @@ const variant = "as declared"
 const (
 	pFromSource   = "source"
 	pFromManifest = "manifest default"
+	pFromLine     = "manifest P(T)"
 	pFromNowhere  = "none"
 )
 
@@ -27,8 +29,8 @@ const (
 type state struct {
 	manifest *manifests.Manifest
 	methods  []*method.Method
-	digests  map[string]lineage.Digest // of methods, by id
-	settings map[string]string         // of sources, by id
+	digests  map[*method.Info]lineage.Digest // of methods
+	settings map[string]string               // of sources, by id
 
 	all      *tables.Analyses
 	verdicts []qc.Verdict     // per analysis
@@ -73,9 +75,9 @@ type published struct {
 }
 
 func newState(m *manifests.Manifest, methods []*method.Method) *state {
-	s := &state{manifest: m, methods: methods, digests: map[string]lineage.Digest{}, settings: map[string]string{}, reasons: map[int32]string{}, tally: newTally()}
+	s := &state{manifest: m, methods: methods, digests: map[*method.Info]lineage.Digest{}, settings: map[string]string{}, reasons: map[int32]string{}, tally: newTally()}
 	for _, me := range methods {
-		s.digests[me.ID] = lineage.Method(me)
+		s.digests[&me.Info] = lineage.Method(me)
 	}
 	for i := range m.Sources {
 		s.settings[m.Sources[i].ID] = m.Sources[i].Setting
@@ -107,6 +109,9 @@ func (s *state) rowPressure(b *tables.Batch, row int) pressure {
 		sigma, _ := b.Number(tables.PSigmaKbar, row)
 		return pressure{p, sigma, pFromSource}
 	}
+	if s.manifest.Pressure.OnLine() {
+		return pressure{source: pFromLine, sigma: s.manifest.Pressure.DefaultSigmaKbar}
+	}
 	if d := s.manifest.Pressure.DefaultKbar; d != nil {
 		return pressure{*d, s.manifest.Pressure.DefaultSigmaKbar, pFromManifest}
 	}
@@ -130,13 +135,12 @@ func tableBasis(scheme string, role chem.Phase, c *chem.Composition) (basis meth
 	default:
 		return basis, false
 	}
-	both := c.State[chem.MeasurandOf(chem.FeO)] == chem.Measured && c.State[chem.MeasurandOf(chem.Fe2O3)] == chem.Measured
 	switch {
 	case scheme == "all Fe2+":
 		basis.Ferric = method.AllFe2
 	case scheme == "charge balance":
 		basis.Ferric = method.Balanced
-	case both:
+	case formula.IronSplit(c):
 		basis.Ferric = method.AsGiven
 	}
 	return basis, true

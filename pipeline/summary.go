@@ -149,7 +149,7 @@ func temperatures(k *kind) []report.Temperature {
 		if l.Info == nil && len(have) == 0 {
 			continue
 		}
-		t := report.Temperature{PairKind: k.name, Method: l.Method, Component: l.Component, N: len(have)}
+		t := report.Temperature{PairKind: k.name, Method: l.Method, Component: l.Component, PublishedKind: l.PublishedKind, N: len(have)}
 		if len(have) > 0 {
 			t.Low, t.Median, t.High = slices.Min(have), discrepancy.Median(have), slices.Max(have)
 		}

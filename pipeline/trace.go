@@ -6,6 +6,7 @@ import (
 	"os"
 	"path/filepath"
 	"reflect"
+	"slices"
 	"strings"
 
 	"tieline/ingest"
@@ -14,7 +15,6 @@ import (
 	"tieline/pipeline/problem"
 	"tieline/pipeline/report"
 	"tieline/pipeline/tables"
-	"tieline/thermo"
 	"tieline/thermo/method"
 )
 
@@ -39,17 +39,7 @@ func TraceEstimate(path, id, runFolder string) (*report.Trace, error) {
 	for i := range s.pairs {
 		s.makePair(i)
 	}
-	parts := strings.Split(id, "|")
-	if len(parts) < 2 {
-		return nil, fmt.Errorf("%s is no estimate_id; one reads <pair or analysis>|<method>|<component>, as in the estimates table", problem.Quote(id))
-	}
-	// A sample's name may hold the separator; a method's id and a component can't.
-	n := len(parts) - 1
-	component := ""
-	if thermo.ByID(parts[n]) == nil && parts[n] != discrepancy.AsPublished {
-		component, n = parts[n], n-1
-	}
-	t, err := s.trace(strings.Join(parts[:n], "|"), parts[n], component)
+	t, err := s.trace(id)
 	if err != nil {
 		return nil, err
 	}
@@ -66,24 +56,27 @@ func TraceEstimate(path, id, runFolder string) (*report.Trace, error) {
 	return t, err
 }
 
-// trace works the estimate of one method and component for one item.
-func (s *state) trace(itemID, methodID, component string) (*report.Trace, error) {
+// trace works the one estimate out.
+func (s *state) trace(id string) (*report.Trace, error) {
+	near := ""
 	for _, k := range s.kinds() {
 		for i, it := range k.items {
-			if s.itemID(it) != itemID {
+			suffix, ok := strings.CutPrefix(id, s.itemID(it))
+			if !ok {
 				continue
 			}
-			if methodID == discrepancy.AsPublished {
-				return s.tracePublished(k, i)
-			}
-			for _, m := range k.methods {
-				if m.ID == methodID {
-					return s.traceMethod(k, i, m, component)
+			for l := range k.lanes {
+				if laneSuffix(&k.lanes[l]) == suffix {
+					return s.traceLane(k, i, &k.lanes[l])
 				}
 			}
+			near = s.itemID(it) + laneSuffix(&k.lanes[0])
 		}
 	}
-	return nil, fmt.Errorf("this compilation has no estimate of %s for %s; ids are in the estimates table", problem.Quote(methodID), problem.Quote(itemID))
+	if near != "" {
+		return nil, fmt.Errorf("this compilation has no estimate %s; one of that row is %s", problem.Quote(id), problem.Quote(near))
+	}
+	return nil, fmt.Errorf("this compilation has no estimate %s; an estimate_id reads <pair or analysis>|<method>|<component>, as in the estimates table", problem.Quote(id))
 }
 
 func (s *state) itemID(it item) string {
@@ -94,16 +87,13 @@ func (s *state) itemID(it item) string {
 	return b.Text(tables.AnalysisID, row)
 }
 
-func (s *state) traceMethod(all *kind, i int, m *method.Method, component string) (*report.Trace, error) {
-	lane := -1
-	for c, name := range m.Components {
-		if name == component {
-			lane = c
-		}
+func (s *state) traceLane(all *kind, i int, l *discrepancy.Lane) (*report.Trace, error) {
+	if l.Info == nil {
+		return s.tracePublished(all, i)
 	}
-	if lane < 0 {
-		return nil, fmt.Errorf("%s has no component %s; it has %s", m.ID, problem.Quote(component), strings.Join(m.Components, ", "))
-	}
+	at := slices.IndexFunc(all.methods, func(m *method.Method) bool { return &m.Info == l.Info })
+	m := all.methods[at]
+	lane := slices.Index(m.Components, l.Component)
 	k := &kind{name: all.name, roles: all.roles, items: all.items[i : i+1]}
 	k.prepare([]*method.Method{m})
 	e := s.newEvaluator(k)
@@ -113,10 +103,20 @@ func (s *state) traceMethod(all *kind, i int, m *method.Method, component string
 	t.Equation, t.Ref, t.Basis = m.Equation, m.Ref, row.Fe3Basis
 	t.Constants = constants(m.Const)
 	for _, q := range e.block.Filled() {
-		t.Quantities = append(t.Quantities, report.Quantity{Name: q.Name, Unit: q.Unit,
-			Value: e.block.Of(q)[0], Why: e.block.Why(q)[0].String(), Leaf: q.Fill == nil})
+		t.Quantities = append(t.Quantities, traced(e.block, q))
 	}
 	return t, nil
+}
+
+// traced gives a quantity's value in a block of one row, or why it has none.
+func traced(b *method.Block, q *method.Quantity) report.Quantity {
+	out := report.Quantity{Name: q.Name, Unit: q.Unit, Leaf: q.Fill == nil}
+	if why := b.Why(q)[0]; why != method.OK {
+		out.Why = why.String()
+	} else if out.Value = finite(b.Of(q)[0]); out.Value == nil {
+		out.Why = method.NotFinite.String()
+	}
+	return out
 }
 
 func (s *state) tracePublished(k *kind, i int) (*report.Trace, error) {

@@ -17,9 +17,13 @@ const AsPublished = "as-published"
 type Lane struct {
 	Method    string
 	Component string
+	Variant   string       // "" for a method on its own basis
 	Info      *method.Info // nil for AsPublished
-	Own       bool         // the lane's method reads the rows themselves, not one member of a pair
-	T         []float64    // degC per row; NaN where there is no number or the estimate is set aside
+	// PublishedKind is what the temperatures of AsPublished are: experiment,
+	// thermometer, estimate, or "" where the source does not say.
+	PublishedKind string
+	Own           bool      // the lane's method reads the rows themselves, not one member of a pair
+	T             []float64 // degC per row; NaN where there is no number or the estimate is set aside
 }
 
 // Through gives the lane as seen from other rows: row i takes this lane's row
@@ -46,10 +50,14 @@ type Grouping struct {
 // AsPublished last.
 type Rows struct {
 	PairKind string
-	Variant  string
-	Lanes    []Lane
-	Sample   []string // per row
-	Source   []string // per row
+	Variant  string // as the table names it
+	// Of is the lanes' Variant that is compared, "" for methods on their own
+	// basis. A variant's lanes are compared with each other and with those of
+	// methods that have no such variant.
+	Of     string
+	Lanes  []Lane
+	Sample []string // per row
+	Source []string // per row
 }
 
 // Compare gives the statistics of every two lanes in every group. Two lanes are
@@ -58,12 +66,13 @@ type Rows struct {
 // share no row.
 func Compare(r *Rows, groupings []Grouping) []tables.DiscrepancyRow {
 	var out []tables.DiscrepancyRow
+	lanes := r.chosen()
 	for _, g := range groupings {
 		for _, name := range groups(g.Group) {
 			rows := members(g.Group, name)
-			for i := range r.Lanes {
-				for j := i + 1; j < len(r.Lanes); j++ {
-					if row, ok := r.compare(&r.Lanes[i], &r.Lanes[j], rows); ok {
+			for i := range lanes {
+				for j := i + 1; j < len(lanes); j++ {
+					if row, ok := r.compare(lanes[i], lanes[j], rows); ok {
 						row.GroupBy, row.Group = g.By, name
 						out = append(out, row)
 					}
@@ -74,8 +83,25 @@ func Compare(r *Rows, groupings []Grouping) []tables.DiscrepancyRow {
 	return out
 }
 
+// chosen gives the lanes of the variant, and those of methods that lack it.
+func (r *Rows) chosen() []*Lane {
+	has := map[string]bool{}
+	for i := range r.Lanes {
+		if l := &r.Lanes[i]; l.Variant == r.Of {
+			has[l.Method] = true
+		}
+	}
+	var out []*Lane
+	for i := range r.Lanes {
+		if l := &r.Lanes[i]; l.Variant == r.Of || (l.Variant == "" && !has[l.Method]) {
+			out = append(out, l)
+		}
+	}
+	return out
+}
+
 func (r *Rows) compare(a, b *Lane, rows []int32) (tables.DiscrepancyRow, bool) {
-	if derived(a, b) || !(a.Own || b.Own) {
+	if derived(a, b) || a.Info == nil || !(a.Own || b.Own) || (r.Of != "" && a.Variant != r.Of && b.Variant != r.Of) {
 		return tables.DiscrepancyRow{}, false
 	}
 	var d []float64
@@ -94,7 +120,8 @@ func (r *Rows) compare(a, b *Lane, rows []int32) (tables.DiscrepancyRow, bool) {
 	return tables.DiscrepancyRow{
 		PairKind: r.PairKind, Variant: r.Variant,
 		MethodA: a.Method, ComponentA: a.Component, MethodB: b.Method, ComponentB: b.Component,
-		N: int64(s.N), NSamples: int64(len(samples)), NSources: int64(len(sources)),
+		PublishedKind: b.PublishedKind,
+		N:             int64(s.N), NSamples: int64(len(samples)), NSources: int64(len(sources)),
 		MeanDiffC: ptr(s.Mean), MedianDiffC: ptr(s.Median), MedianAbsDiffC: ptr(s.MedianAbs),
 		SDC: ptr(s.SD), MADC: ptr(s.MAD), LoALowC: ptr(s.LoALow), LoAHighC: ptr(s.LoAUp),
 	}, true

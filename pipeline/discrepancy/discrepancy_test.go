@@ -135,3 +135,25 @@ func TestThrough(t *testing.T) {
 		t.Errorf("lane through rows 1, none, 0 is %v, own %v; want 6, NaN, 5, not own", got.T, got.Own)
 	}
 }
+
+// A variant is compared within itself and with methods that have no such
+// variant; what needs no variant is not said again.
+func TestCompareVariant(t *testing.T) {
+	lane := func(m, v string, x float64) Lane {
+		return Lane{Method: m, Variant: v, Info: &method.Info{ID: m}, Own: true, T: []float64{x}}
+	}
+	rows := &Rows{PairKind: "k", Variant: "all Fe2+", Of: "all Fe2+", Sample: []string{"s"}, Source: []string{"x"},
+		Lanes: []Lane{lane("wells", "", 1), lane("wells", "all Fe2+", 2), lane("bkn", "", 4), lane("other", "", 8), {Method: AsPublished, T: []float64{16}}}}
+	var lines []string
+	for _, r := range Compare(rows, []Grouping{{By: "all", Group: []string{"all"}}}) {
+		lines = append(lines, line(r))
+	}
+	want := []string{
+		"all=all wells - bkn: n 1 samples 1 sources 1 mean -2",
+		"all=all wells - other: n 1 samples 1 sources 1 mean -6",
+		"all=all wells - as-published: n 1 samples 1 sources 1 mean -14",
+	}
+	if !slices.Equal(lines, want) {
+		t.Errorf("comparisons\n%q\nwant\n%q", lines, want)
+	}
+}

@@ -3,6 +3,7 @@ package report
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"tieline/pipeline/problem"
@@ -39,6 +40,7 @@ type Count struct {
 // Temperature is one method and component over all pairs.
 type Temperature struct {
 	PairKind, Method, Component string
+	PublishedKind               string
 	N                           int
 	Median, Low, High           float64 // degC
 	SigmaC                      float64 // calibration 1-sigma, degC
@@ -104,7 +106,7 @@ func (s *Summary) temperatures(b *strings.Builder) {
 		if t.SigmaC > 0 {
 			sigma = fmt.Sprintf("%.0f", t.SigmaC)
 		}
-		name := name(t.PairKind, t.Method, t.Component)
+		name := name(t.PairKind, t.Method, t.Component, t.PublishedKind)
 		if t.N == 0 {
 			fmt.Fprintf(b, "    %-40s %6d\n", name, 0)
 			continue
@@ -118,12 +120,9 @@ func (s *Summary) temperatures(b *strings.Builder) {
 
 // name is a method and component as they stand under the heading of a pair
 // kind: the kind is not said again.
-func name(kind, method, component string) string {
-	method = strings.TrimPrefix(method, kind+"/")
-	if component == "" {
-		return method
-	}
-	return method + " " + component
+func name(kind string, words ...string) string {
+	words[0] = strings.TrimPrefix(words[0], kind+"/")
+	return strings.Join(slices.DeleteFunc(words, func(w string) bool { return w == "" }), " ")
 }
 
 // discrepancies lists the comparisons that say something at a glance: a method's
@@ -149,7 +148,7 @@ func (s *Summary) discrepancies(b *strings.Builder) {
 		if d.SDC != nil {
 			sd = fmt.Sprintf("%.0f", *d.SDC)
 		}
-		pair := name(kind, d.MethodA, d.ComponentA) + " - " + name(kind, d.MethodB, d.ComponentB)
+		pair := name(kind, d.MethodA, d.ComponentA) + " - " + name(kind, d.MethodB, d.ComponentB, d.PublishedKind)
 		fmt.Fprintf(b, "    %-58s %6d %8d %8s %8s\n", pair, d.N, d.NSamples, signed(*d.MedianDiffC), sd)
 	}
 	if left > 0 {

@@ -51,11 +51,11 @@ type Cell struct {
 
 // Quantity is one quantity on the way to the temperature.
 type Quantity struct {
-	Name  string  `json:"name"`
-	Unit  string  `json:"unit"`
-	Value float64 `json:"value"`
-	Why   string  `json:"why,omitempty"` // why there is no value
-	Leaf  bool    `json:"read_off_the_analysis"`
+	Name  string   `json:"name"`
+	Unit  string   `json:"unit"`
+	Value *float64 `json:"value"`         // nil where there is none
+	Why   string   `json:"why,omitempty"` // why there is none
+	Leaf  bool     `json:"read_off_the_analysis"`
 }
 
 // Constant is one constant of the method.
@@ -106,9 +106,9 @@ func (t *Trace) numbers(b *strings.Builder) {
 		b.WriteString("\nQuantities, as they were worked out\n")
 	}
 	for _, q := range t.Quantities {
-		value := digits(q.Value) + " " + q.Unit
-		if q.Why != "" {
-			value = "none: " + q.Why
+		value := "none: " + q.Why
+		if q.Value != nil {
+			value = digits(*q.Value) + " " + q.Unit
 		}
 		fmt.Fprintf(b, "  %-36s %s\n", q.Name, value)
 	}

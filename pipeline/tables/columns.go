@@ -81,6 +81,7 @@ var every = []struct {
 	{"analyses", "One row per analysis, in reading order: as the source gives it, its structural formula, its verdict.", reflect.TypeFor[AnalysisRow]()},
 	{"pairs", "One row per pair of analyses taken as coexisting.", reflect.TypeFor[PairRow]()},
 	{"estimates", "One row per temperature: a method, one of its components, a pair or an analysis. Rows without a number say why.", reflect.TypeFor[EstimateRow]()},
+	{"samples", "One row per method, component, texture and sample, and then per unit: medians.", reflect.TypeFor[SampleRow]()},
 	{"discrepancies", "One row per two methods and group: the statistics of a minus b.", reflect.TypeFor[DiscrepancyRow]()},
 	{"qc", "One row per rule that fired on a row.", reflect.TypeFor[FindingRow]()},
 }

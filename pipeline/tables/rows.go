@@ -221,18 +221,44 @@ type EstimateRow struct {
 	Method        string   `parquet:"method" doc:"Id of the published calibration; the command methods lists them with their equations"`
 	Component     string   `parquet:"component,optional" doc:"The end member whose equilibrium gives the temperature, Ab, Or or An; NULL where a method gives one temperature"`
 	TC            *float64 `parquet:"t_c,optional" unit:"degC" doc:"The temperature; NULL where there is none, with the reason"`
+	BoundC        *float64 `parquet:"bound_c,optional" unit:"degC" doc:"The temperature with the detection limit put for a component that is below it: status says whether the temperature is at most or at least that; NULL for other estimates"`
 	DTDP          *float64 `parquet:"dt_dp_c_per_kbar,optional" unit:"degC/kbar" doc:"Change of the temperature with pressure at p_kbar, from P +- 100 bar; NULL where there is no temperature"`
 	PKbar         *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the temperature is computed at; NULL where none is known"`
 	PSource       string   `parquet:"p_source" doc:"Where p_kbar comes from: source, manifest default (an assumed pressure), or none"`
 	Fe3Basis      string   `parquet:"fe3_basis,optional" doc:"Ferric-iron convention of the method's formulae: as given, all Fe2+, all Fe3+, charge balance; NULL where the method takes no iron"`
 	InRange       *bool    `parquet:"in_range,optional" doc:"Whether composition, temperature and pressure lie where the method was calibrated; NULL where there is no temperature, and for as-published"`
 	OutOfRange    string   `parquet:"out_of_range,optional" doc:"The variables outside the calibrated range, joined by commas; NULL where in_range is not false"`
-	Status        string   `parquet:"status" doc:"number, or no number"`
+	Status        string   `parquet:"status" doc:"number; no number; or at most, at least: a component is below detection where the method takes its logarithm, and bound_c is a bound"`
 	Reason        string   `parquet:"reason,optional" doc:"Why there is no number, or why the number is flagged or set aside; NULL for a number that is kept"`
 	Standing      string   `parquet:"standing,optional" doc:"How sure it is that the coefficients are the published ones: confirmed, consistent, recalled; NULL for as-published"`
 	PublishedKind string   `parquet:"published_kind,optional" doc:"For method as-published, what the temperature is: experiment, thermometer or estimate; NULL for other methods"`
 	Verdict       string   `parquet:"verdict" doc:"kept, flagged (used, with reasons) or set aside (not used, with reasons); the table qc has the reasons"`
 	Lineage       string   `parquet:"lineage" doc:"128 bits of SHA-256, in hexadecimal, over the pair's or analysis's lineage, the method's digest, the pressure and the settings; equal lineage means the row comes from equal input"`
+}
+
+// SampleRow is the temperatures of one method and component in one sample, or
+// in the samples of one unit, of one texture.
+type SampleRow struct {
+	Level         string   `parquet:"level" doc:"sample: the median of the sample's pairs or analyses of one texture; unit: the median of the medians of the unit's samples"`
+	Sample        string   `parquet:"sample,optional" doc:"The sample; NULL at level unit"`
+	Unit          string   `parquet:"unit,optional" doc:"Geological unit, as the source names it; NULL where not given"`
+	Locality      string   `parquet:"locality,optional" doc:"Locality of the sample; NULL where not given, and at level unit"`
+	Texture       string   `parquet:"texture,optional" doc:"Textural position; cores and rims are never put together; NULL where not given"`
+	PairKind      string   `parquet:"pair_kind" doc:"two-feldspar, two-pyroxene, ..., or the one phase a method needs"`
+	Variant       string   `parquet:"variant" doc:"Which reading of the compilation the row belongs to; as declared is the manifest as it stands"`
+	Method        string   `parquet:"method" doc:"Id of the published calibration, or as-published"`
+	Component     string   `parquet:"component,optional" doc:"The end member whose equilibrium gives the temperature; NULL where a method gives one temperature"`
+	Closes        string   `parquet:"closes,optional" doc:"The system that closes on cooling; rows of different systems are not to be averaged; NULL for as-published"`
+	Standing      string   `parquet:"standing,optional" doc:"How sure it is that the coefficients are the published ones; NULL for as-published"`
+	PublishedKind string   `parquet:"published_kind,optional" doc:"For method as-published, what the temperatures are: experiment, thermometer or estimate; NULL for other methods"`
+	N             int64    `parquet:"n" doc:"Pairs or analyses that count: neither set aside nor out of range in composition"`
+	NSamples      int64    `parquet:"n_samples" doc:"Samples they come from"`
+	NSources      int64    `parquet:"n_sources" doc:"Sources they come from; at level unit the most of any sample"`
+	NLeftOut      int64    `parquet:"n_left_out" doc:"Estimates left out since they are set aside or out of range in composition"`
+	MedianC       *float64 `parquet:"median_c,optional" unit:"degC" doc:"Median; NULL where n is 0"`
+	MADC          *float64 `parquet:"mad_c,optional" unit:"degC" doc:"Median absolute deviation from the median, raw; NULL where n is 0"`
+	LowestC       *float64 `parquet:"lowest_c,optional" unit:"degC" doc:"Lowest; NULL where n is 0"`
+	HighestC      *float64 `parquet:"highest_c,optional" unit:"degC" doc:"Highest; NULL where n is 0"`
 }
 
 // DiscrepancyRow is the statistics of one method against another, a minus b,
@@ -246,6 +272,7 @@ type DiscrepancyRow struct {
 	ComponentA     string   `parquet:"component_a,optional" doc:"Component of method a; NULL where it gives one temperature"`
 	MethodB        string   `parquet:"method_b" doc:"Id of method b; as-published is always b"`
 	ComponentB     string   `parquet:"component_b,optional" doc:"Component of method b; NULL where it gives one temperature"`
+	PublishedKind  string   `parquet:"published_kind,optional" doc:"Where b is as-published, what its temperatures are: experiment, thermometer or estimate; NULL where the source does not say, and for other methods"`
 	N              int64    `parquet:"n" doc:"Number of differences"`
 	NSamples       int64    `parquet:"n_samples" doc:"Number of samples they come from"`
 	NSources       int64    `parquet:"n_sources" doc:"Number of sources they come from"`

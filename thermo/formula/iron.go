@@ -19,6 +19,27 @@ func agree(total, parts, absolute float64) bool {
 	return math.Abs(total-parts) <= absolute+float64(agreeRelative*total)
 }
 
+// IronSplit says whether the source gives iron as ferrous and as ferric, and that
+// split is what counts: no total stands beside it that disagrees.
+func IronSplit(c *chem.Composition) bool {
+	if c.Kind == chem.Apfu {
+		fe2, fe3 := chem.MeasurandOfCation(chem.Fe2), chem.MeasurandOfCation(chem.Fe3)
+		split := c.State[fe2] == chem.Measured && c.State[fe3] == chem.Measured
+		return split && (c.State[chem.FeT] != chem.Measured || agree(c.Value[chem.FeT], c.Value[fe2]+c.Value[fe3], agreeApfu))
+	}
+	feO, fe2O3 := chem.MeasurandOf(chem.FeO), chem.MeasurandOf(chem.Fe2O3)
+	_, _, twice, agrees := IronTwice(c)
+	return c.State[feO] == chem.Measured && c.State[fe2O3] == chem.Measured && (!twice || agrees)
+}
+
+// TotalsDiffer compares a total of iron as FeO with one as Fe2O3, where both are
+// given, as wt% FeO. The first is used.
+func TotalsDiffer(c *chem.Composition) (asFeO, asFe2O3 float64, both, differ bool) {
+	asFeO, asFe2O3 = c.Amount(chem.FeOT), float64(chem.FeOPerFe2O3*c.Amount(chem.Fe2O3T))
+	both = c.State[chem.FeOT] == chem.Measured && c.State[chem.Fe2O3T] == chem.Measured
+	return asFeO, asFe2O3, both, both && !agree(asFeO, asFe2O3, agreeWt)
+}
+
 // IronTwice says whether c lists iron as a total beside FeO or Fe2O3, and gives
 // both as wt% FeO. A total that agrees with its parts is counted once, as the
 // parts; one that does not is taken for all the iron there is, as FeO.
@@ -49,8 +70,10 @@ func ironOxides(c *chem.Composition) (feO, fe2O3 float64) {
 
 // ironApfu is each atom of iron once, by the same rule.
 func ironApfu(c *chem.Composition) (fe2, fe3 float64) {
-	fe2, fe3 = c.Amount(chem.MeasurandOfCation(chem.Fe2)), c.Amount(chem.MeasurandOfCation(chem.Fe3))
-	if c.State[chem.FeT] == chem.Measured && !agree(c.Value[chem.FeT], fe2+fe3, agreeApfu) {
+	m2, m3 := chem.MeasurandOfCation(chem.Fe2), chem.MeasurandOfCation(chem.Fe3)
+	fe2, fe3 = c.Amount(m2), c.Amount(m3)
+	parts := c.State[m2] == chem.Measured || c.State[m3] == chem.Measured
+	if c.State[chem.FeT] == chem.Measured && !(parts && agree(c.Value[chem.FeT], fe2+fe3, agreeApfu)) {
 		return c.Value[chem.FeT], 0
 	}
 	return fe2, fe3

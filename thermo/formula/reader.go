@@ -104,3 +104,21 @@ func determined(c *chem.Composition, cation chem.Cation) bool {
 
 // Determined says whether the source looked for the cation, iron in any form.
 func Determined(c *chem.Composition, cation chem.Cation) bool { return determined(c, cation) }
+
+// Measurands are what a source of a kind reports a leaf as: the oxides or
+// cations of its cations, or what its end member is made from.
+func Measurands(kind chem.Kind, l *method.Leaf) []chem.Measurand {
+	if len(l.Cations) == 0 {
+		i := l.EndMember - chem.XAb
+		return feldsparMeasurands[kind][i : i+1]
+	}
+	var out []chem.Measurand
+	for _, cation := range l.Cations {
+		if kind == chem.Apfu {
+			out = append(out, chem.MeasurandOfCation(cation))
+		} else {
+			out = append(out, chem.MeasurandOf(chem.Cations[cation].Oxide))
+		}
+	}
+	return out
+}

@@ -15,6 +15,7 @@ const (
 	NegativeT
 	NeedsPressure
 	NotFinite
+	OffTheLine
 	M2Full
 	SiteFull
 	CaHalf
@@ -34,6 +35,7 @@ var texts = [numReasons]string{
 	NegativeT:      "the equation gives no temperature above absolute zero",
 	NeedsPressure:  "needs pressure: dT/dP is above 1 degC/kbar and none is given",
 	NotFinite:      "the equation has no finite value here",
+	OffTheLine:     "the method's T(P) and the manifest's line P(T) do not meet",
 	M2Full:         "Ca/(1 - Na) is 1 or more: no Mg2Si2O6 is left to take the logarithm of",
 	SiteFull:       "other cations fill M1 or M2: no Mg is left there to take the logarithm of",
 	CaHalf:         "Ca/(Ca + Mg + Fe2+) is 0.5 or more: the method takes the logarithm of one less twice of it",
