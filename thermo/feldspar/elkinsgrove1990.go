@@ -14,7 +14,7 @@ import (
 var ElkinsGrove1990 = twoFeldspar(method.Info{
 	ID:       "two-feldspar/elkins-grove-1990",
 	Ref:      "Elkins LT, Grove TL (1990) Ternary feldspar experiments and thermodynamic models. Am Mineral 75:544-559",
-	Shares:   []string{"two-feldspar/fuhrman-lindsley-1988"},
+	Shares:   []string{"two-feldspar/fuhrman-lindsley-1988", "two-feldspar/holland-powell-2003", benisekID, putirkaID, haseltonID, haseltonSolvusID},
 	Standing: method.Confirmed,
 	Sigma: method.Sigma{C: []float64{31, 16, 19},
 		Origin: "misfit (rms) on the 20 runs of Elkins & Grove 1990, to which the method was fitted"},

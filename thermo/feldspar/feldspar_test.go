@@ -17,7 +17,8 @@ import (
 
 var both = []*method.Method{ElkinsGrove1990, FuhrmanLindsley1988}
 
-// pair is a tie line: fractions in the order Ab, Or, An as printed, whatever they sum to.
+// pair is a tie line: fractions in the order Ab, Or, An as printed, whatever
+// they sum to. Of two lamellae the Na side stands for Afs, the K side for Pl.
 type pair struct {
 	run     string
 	c       float64 // run temperature, degC
@@ -45,7 +46,7 @@ func evaluate(m *method.Method, pairs []pair) []method.Lane {
 		values, why := b.Set(q)
 		for i, p := range pairs {
 			x := p.pl
-			if q.Leaf.Phase == chem.Afs {
+			if q.Leaf.Phase == chem.Afs || q.Leaf.Phase == chem.NaFsp {
 				x = p.afs
 			}
 			r.Reset(endMembers(x))
@@ -72,15 +73,17 @@ var (
 )
 
 // Worked pairs of the project's method reference, feldspar section 6: three
-// runs of Elkins & Grove (1990) through both models. They lock the code to the
+// runs of Elkins & Grove (1990) through the ternary models. They lock the code to the
 // recalled parameters; the experiments below test those.
 func TestWorkedPairs(t *testing.T) {
 	want := map[*method.Method][3][3]float64{
 		ElkinsGrove1990:     {{885.2, 876.4, 888.6}, {677.9, 670.5, 683.1}, {706.5, 688.5, 704.8}},
 		FuhrmanLindsley1988: {{927.1, 816.7, 844.4}, {695.5, 666.1, 700.3}, {721.6, 694.2, 729.3}},
+		Benisek2004:         {{917.5, 896.4, 846.7}, {686.6, 712.6, 697.3}, {718.4, 724.6, 721.4}},
+		HollandPowell2003:   {{821.8, 885.5, 978.2}, {662.7, 672.8, 727.1}, {690.2, 689.5, 742.7}},
 	}
 	pairs := []pair{m1, g2, g5}
-	for _, m := range both {
+	for m := range want {
 		lanes := evaluate(m, pairs)
 		for i, p := range pairs {
 			for c, name := range components {
@@ -99,6 +102,8 @@ func TestExactTieLines(t *testing.T) {
 	}{
 		{ElkinsGrove1990, pair{"800 degC", 800, 5000, [3]float64{.26969519, .70871684, .02158796}, [3]float64{.626137, .073863, .3}}},
 		{FuhrmanLindsley1988, pair{"900 degC", 900, 8000, [3]float64{.26609194, .69662565, .03728241}, [3]float64{.5662332, .1337668, .3}}},
+		{Benisek2004, pair{"850 degC", 850, 6000, [3]float64{.28596473, .68276251, .03127276}, [3]float64{.62829103, .07170897, .3}}},
+		{HollandPowell2003, pair{"750 degC", 750, 4000, [3]float64{.34322954, .64311157, .01365889}, [3]float64{.72449109, .07550891, .2}}},
 	} {
 		lanes := evaluate(x.m, []pair{x.pair})
 		for c, name := range components {
@@ -134,17 +139,33 @@ func TestActivities(t *testing.T) {
 		{FuhrmanLindsley1988, g5,
 			[3][3]float64{{.33297, .65693, .00255}, {2.26222, 1.12788, 97.05883}, {.75324, .74094, .24752}},
 			[3][3]float64{{.75443, .07027, .05169}, {.96920, 10.35980, 4.39996}, {.73119, .72799, .22745}}},
+		{Benisek2004, m1,
+			[3][3]float64{{.29963, .66419, .00937}, {1.74981, 1.09313, 47.80985}, {.52430, .72604, .44813}},
+			[3][3]float64{{.46422, .05962, .18463}, {1.09457, 12.82837, 2.70062}, {.50812, .76488, .49861}}},
+		{HollandPowell2003, m1,
+			[3][3]float64{{.30000, .66500, .03500}, {1.73038, 1.13804, 16.47419}, {.51911, .75679, .57660}},
+			[3][3]float64{{.54500, .07000, .38500}, {1.00898, 10.95649, 1.24150}, {.54989, .76695, .47798}}},
+		{Benisek2004, g2,
+			[3][3]float64{{.27598, .71494, .00229}, {2.43236, 1.07700, 159.03893}, {.67128, .76999, .36431}},
+			[3][3]float64{{.69816, .05055, .07935}, {.98140, 15.97346, 4.64647}, {.68518, .80746, .36868}}},
+		{HollandPowell2003, g2,
+			[3][3]float64{{.27600, .71500, .00900}, {2.50415, 1.10829, 37.12094}, {.69114, .79243, .33409}},
+			[3][3]float64{{.73200, .05300, .21500}, {1.00373, 13.56633, 1.42924}, {.73473, .71902, .30729}}},
+		{Benisek2004, g5,
+			[3][3]float64{{.33297, .65693, .00255}, {2.26140, 1.13228, 118.46257}, {.75297, .74384, .30211}},
+			[3][3]float64{{.75443, .07027, .05169}, {.97470, 11.44293, 5.38107}, {.73534, .80410, .27817}}},
+		{HollandPowell2003, g5,
+			[3][3]float64{{.33300, .65700, .01000}, {2.28803, 1.17127, 27.96707}, {.76191, .76952, .27967}},
+			[3][3]float64{{.77300, .07200, .15500}, {.99952, 10.33800, 1.61241}, {.77263, .74434, .24992}}},
 	} {
-		k := x.m.Const.(*Constants)
-		printed := k.R / 8.31446
+		printed := chem.GasConstant / 8.31446
 		for phase, composition := range map[string][3]float64{"Afs": x.p.afs, "Pl": x.p.pl} {
 			want := x.afs
 			if phase == "Pl" {
 				want = x.pl
 			}
 			kelvin := chem.Celsius(x.p.c).Kelvin()
-			ideal := k.Ideal.Activity(composition)
-			ln := k.Excess.LnGamma(composition, kelvin, x.p.p)
+			ideal, ln := activity(x.m, composition, kelvin, x.p.p)
 			for c, name := range components {
 				what := x.m.ID + " " + x.p.run + " " + phase + " " + name
 				gamma := math.Exp(ln[c] * printed)
@@ -154,6 +175,17 @@ func TestActivities(t *testing.T) {
 			}
 		}
 	}
+}
+
+// activity gives a model's ideal activities and ln gamma.
+func activity(m *method.Method, x [3]float64, t chem.Kelvin, p chem.Bar) (ideal, ln [3]float64) {
+	switch k := m.Const.(type) {
+	case *Constants:
+		return k.Ideal.Activity(x), k.Excess.LnGamma(x, t, p)
+	case *ASFConstants:
+		return x, k.Excess.LnGamma(x, t, p)
+	}
+	panic(m.ID + " is no ternary model")
 }
 
 // runs are the 20 experiments of Elkins LT, Grove TL (1990) Am Mineral
@@ -283,9 +315,10 @@ func TestSigmaIsTheMisfit(t *testing.T) {
 	if len(sodic) != 17 {
 		t.Fatalf("%d runs have plagioclase below An50, want 17", len(sodic))
 	}
-	for m, pairs := range map[*method.Method][]pair{ElkinsGrove1990: all, FuhrmanLindsley1988: sodic} {
+	for m, pairs := range map[*method.Method][]pair{ElkinsGrove1990: all, FuhrmanLindsley1988: sodic, Benisek2004: sodic, HollandPowell2003: sodic,
+		Haselton1983: sodic, WhitneyStormer1977: sodic, Stormer1975: all, PowellPowell1977: all, Putirka2008: all} {
 		for c, lane := range evaluate(m, pairs) {
-			near(t, m.ID+" rms misfit of T_"+components[c], rms(misfits(lane, pairs)), m.Sigma.C[c], 0.5)
+			near(t, m.ID+" rms misfit of T_"+m.Components[c], rms(misfits(lane, pairs)), m.Sigma.C[c], 0.5)
 		}
 	}
 }
@@ -304,6 +337,8 @@ func TestPressureDependence(t *testing.T) {
 	for m, want := range map[*method.Method][3]float64{
 		ElkinsGrove1990:     {14.3, 0.6, -13.9},
 		FuhrmanLindsley1988: {14.7, 1.7, -11.7},
+		Benisek2004:         {17.0, 4.6, -7.8},
+		HollandPowell2003:   {12.9, 7.7, -1.8},
 	} {
 		up, down := evaluate(m, shifted(100)), evaluate(m, shifted(-100))
 		for c, name := range components {

@@ -14,7 +14,7 @@ import (
 var FuhrmanLindsley1988 = twoFeldspar(method.Info{
 	ID:       "two-feldspar/fuhrman-lindsley-1988",
 	Ref:      "Fuhrman ML, Lindsley DH (1988) Ternary-feldspar modeling and thermometry. Am Mineral 73:201-215",
-	Shares:   []string{"two-feldspar/elkins-grove-1990"},
+	Shares:   []string{"two-feldspar/elkins-grove-1990", "two-feldspar/holland-powell-2003", benisekID, haseltonID, haseltonSolvusID},
 	Standing: method.Confirmed,
 	Sigma: method.Sigma{C: []float64{31, 31, 42},
 		Origin: "misfit (rms) on the 17 runs of Elkins & Grove 1990 with plagioclase below An50, to which the method was not fitted"},
@@ -23,6 +23,8 @@ var FuhrmanLindsley1988 = twoFeldspar(method.Info{
 		Bounds: []method.Bound{
 			{Name: "T", Unit: "degC", Min: 650, Max: 900},
 			{Name: "P", Unit: "kbar", Min: 1, Max: 3},
+			// Above An50 it misses the runs of Elkins & Grove by up to 220 degC.
+			{Name: inPl[2].Name, Unit: inPl[2].Unit, Quantity: inPl[2], Min: 0, Max: 0.5, Composition: true},
 		},
 	},
 }, &Constants{

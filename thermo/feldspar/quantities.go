@@ -22,6 +22,25 @@ var (
 	fractions = append(inAfs[:], inPl[:]...)
 )
 
+// parts is part/(part + other): the fraction in a binary.
+func parts(part, other *method.Quantity, name string) *method.Quantity {
+	return &method.Quantity{
+		Name:  name,
+		Unit:  "1",
+		Needs: []*method.Quantity{part, other},
+		Fill: func(b *method.Block, q []float64, why []method.Reason) {
+			x, y := b.Of(part), b.Of(other)
+			for i := range q {
+				sum := x[i] + y[i]
+				q[i] = x[i] / sum
+				if why[i] == method.OK && !(sum > 0) {
+					why[i] = method.NonPositiveLog
+				}
+			}
+		},
+	}
+}
+
 func fraction(phase chem.Phase, c int, probeMin, probeMax float64) *method.Quantity {
 	return &method.Quantity{
 		Name: components[c] + " in " + string(phase),

@@ -22,7 +22,7 @@ var BreyKoehler1990Ca = func() *method.Method {
 			Ref:         breyKoehler,
 			Phases:      []chem.Phase{chem.Opx},
 			Components:  []string{""},
-			Shares:      []string{"two-pyroxene/brey-koehler-1990"},
+			Shares:      []string{"two-pyroxene/brey-koehler-1990", naID},
 			Closes:      "Ca solvus",
 			Assemblage:  besideCpx,
 			NeedsBeside: chem.Cpx,

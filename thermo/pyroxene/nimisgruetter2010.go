@@ -37,6 +37,7 @@ var NimisGruetter2010 = func() *method.Method {
 				Bounds: []method.Bound{
 					{Name: "T", Unit: "degC", Min: 700, Max: 1400},
 					{Name: "P", Unit: "kbar", Min: 10, Max: 60},
+					caOfOpx,
 				},
 			},
 			Sigma: method.Sigma{C: []float64{47},

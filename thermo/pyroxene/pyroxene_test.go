@@ -44,12 +44,20 @@ func ironFree(ca float64) *chem.Composition {
 
 // evaluate runs m on the pairs as one block, leaves read the way a run reads them.
 func evaluate(m *method.Method, pairs []pair) method.Lane {
+	b := block(m.Needs, pairs)
+	lanes := method.NewLanes(m, b.N)
+	m.Evaluate(b, lanes)
+	return lanes[0]
+}
+
+// block holds the leaves that needs reach of the pairs.
+func block(needs []*method.Quantity, pairs []pair) *method.Block {
 	b := method.NewBlock(len(pairs))
 	for i, p := range pairs {
 		b.P[i] = p.p.Bar()
 	}
 	var r formula.Reader
-	for _, q := range method.Leaves(m.Needs) {
+	for _, q := range method.Leaves(needs) {
 		values, why := b.Set(q)
 		for i, p := range pairs {
 			c := p.opx
@@ -60,9 +68,7 @@ func evaluate(m *method.Method, pairs []pair) method.Lane {
 			values[i], why[i] = r.Leaf(q.Leaf)
 		}
 	}
-	lanes := method.NewLanes(m, b.N)
-	m.Evaluate(b, lanes)
-	return lanes[0]
+	return b
 }
 
 func near(t *testing.T, what string, got, want, tol float64) {
@@ -141,19 +147,7 @@ func TestWorkedFerricIron(t *testing.T) {
 
 // Quantities on the way, printed for the same pairs.
 func TestWorkedQuantities(t *testing.T) {
-	b := method.NewBlock(3)
-	var r formula.Reader
-	for _, q := range method.Leaves(BreyKoehler1990.Needs) {
-		values, why := b.Set(q)
-		for i, p := range worked[:3] {
-			c := p.opx
-			if q.Leaf.Phase == chem.Cpx {
-				c = p.cpx
-			}
-			r.Reset(c)
-			values[i], why[i] = r.Leaf(q.Leaf)
-		}
-	}
+	b := block(BreyKoehler1990.Needs, worked[:3])
 	for q, want := range map[*method.Quantity][3]float64{
 		caStarInCpx: {.73789, .90531, .89034}, caStarInOpx: {.08454, .02313, .01330},
 		lnKStar:  {-1.25067, -2.33374, -2.19701},

@@ -13,6 +13,10 @@ import (
 // all iron as Fe2+.
 var SixOxygens = method.Basis{Oxygens: 6, Cations: 4, Ferric: method.AllFe2}
 
+// FourCations is the formula of the methods framed on Fe2+: six oxygens, four
+// cations, Fe3+ by charge balance.
+var FourCations = method.Basis{Oxygens: 6, Cations: 4, Ferric: method.Balanced}
+
 // The cations the methods here read.
 var (
 	caInCpx = cation(chem.Cpx, "Ca", 0.4, 0.8, chem.Ca)
@@ -23,14 +27,50 @@ var (
 	naInOpx = cation(chem.Opx, "Na", 0, 0.03, chem.Na)
 	feInOpx = cation(chem.Opx, "Fe", 0.1, 0.7, chem.Fe2, chem.Fe3)
 	mgInOpx = cation(chem.Opx, "Mg", 1.2, 1.85, chem.Mg)
+
+	siInCpx = cation(chem.Cpx, "Si", 1.85, 1.99, chem.Si)
+	alInCpx = cation(chem.Cpx, "Al", 0.05, 0.3, chem.Al)
+	siInOpx = cation(chem.Opx, "Si", 1.9, 1.99, chem.Si)
+	alInOpx = cation(chem.Opx, "Al", 0.03, 0.2, chem.Al)
+	crInOpx = cation(chem.Opx, "Cr", 0, 0.03, chem.Cr)
+	mnInOpx = cation(chem.Opx, "Mn", 0, 0.02, chem.Mn)
+
+	tiInCpx   = spectator(SixOxygens, chem.Cpx, "Ti", 0, 0.02, chem.Ti)
+	crIfInCpx = spectator(SixOxygens, chem.Cpx, "Cr", 0, 0.04, chem.Cr)
+	mnIfInCpx = spectator(SixOxygens, chem.Cpx, "Mn", 0, 0.01, chem.Mn)
+	kInCpx    = spectator(SixOxygens, chem.Cpx, "K", 0, 0.005, chem.K)
+	tiInOpx   = spectator(SixOxygens, chem.Opx, "Ti", 0, 0.01, chem.Ti)
+	crIfInOpx = spectator(SixOxygens, chem.Opx, "Cr", 0, 0.03, chem.Cr)
+	mnIfInOpx = spectator(SixOxygens, chem.Opx, "Mn", 0, 0.02, chem.Mn)
+	kInOpx    = spectator(SixOxygens, chem.Opx, "K", 0, 0.002, chem.K)
 )
 
 func cation(phase chem.Phase, name string, probeMin, probeMax float64, cations ...chem.Cation) *method.Quantity {
+	return on(SixOxygens, phase, name, probeMin, probeMax, cations...)
+}
+
+// on is the cations of one phase, which must have been measured.
+func on(basis method.Basis, phase chem.Phase, name string, probeMin, probeMax float64, cations ...chem.Cation) *method.Quantity {
 	return &method.Quantity{
-		Name: name + " in " + string(phase) + " (6 O, all Fe2+)",
+		Name: name + " in " + string(phase) + " (" + basisName(basis) + ")",
 		Unit: "apfu",
-		Leaf: &method.Leaf{Phase: phase, Basis: SixOxygens, Cations: cations, Probe: [2]float64{probeMin, probeMax}},
+		Leaf: &method.Leaf{Phase: phase, Basis: basis, Cations: cations, Probe: [2]float64{probeMin, probeMax}},
 	}
+}
+
+// spectator is a minor cation that may be absent: not analysed, it counts as zero.
+func spectator(basis method.Basis, phase chem.Phase, name string, probeMin, probeMax float64, cation chem.Cation) *method.Quantity {
+	q := on(basis, phase, name, probeMin, probeMax, cation)
+	q.Name += ", 0 where not analysed"
+	q.Leaf.Optional = true
+	return q
+}
+
+func basisName(b method.Basis) string {
+	if b == FourCations {
+		return "4 cations, charge balance"
+	}
+	return "6 O, all Fe2+"
 }
 
 // Ca* = Ca/(1 - Na), all Ca and Na in M2. At 1 and above there is no
@@ -77,8 +117,12 @@ var (
 )
 
 func xFe(phase chem.Phase, fe, mg *method.Quantity) *method.Quantity {
+	return xFeOf("X_Fe in "+string(phase), fe, mg)
+}
+
+func xFeOf(name string, fe, mg *method.Quantity) *method.Quantity {
 	return &method.Quantity{
-		Name:  "X_Fe in " + string(phase),
+		Name:  name,
 		Unit:  "1",
 		Needs: []*method.Quantity{fe, mg},
 		Fill: func(b *method.Block, q []float64, why []method.Reason) {
@@ -110,7 +154,25 @@ var lnCaInOpx = &method.Quantity{
 	},
 }
 
-// mantle is the setting all methods here were made for.
+// KDFeMg is (Fe/Mg)_Cpx/(Fe/Mg)_Opx, all iron: whether the two can have
+// coexisted, and no thermometer. Experimental igneous pairs have 1.09 +- 0.14
+// (Putirka KD (2008) Rev Mineral Geochem 69:61-120, from memory).
+var KDFeMg = &method.Quantity{
+	Name:  "KD Fe-Mg, (Fe/Mg)_Cpx/(Fe/Mg)_Opx, all iron",
+	Unit:  "1",
+	Needs: []*method.Quantity{feInCpx, mgInCpx, feInOpx, mgInOpx},
+	Fill: func(b *method.Block, q []float64, why []method.Reason) {
+		fc, mc, fo, mo := b.Of(feInCpx), b.Of(mgInCpx), b.Of(feInOpx), b.Of(mgInOpx)
+		for i := range q {
+			q[i] = float64(fc[i]*mo[i]) / float64(mc[i]*fo[i])
+			if why[i] == method.OK && !(mc[i] > 0 && fo[i] > 0) {
+				why[i] = method.NotFinite
+			}
+		}
+	},
+}
+
+// mantle is the setting of the methods made for xenoliths.
 const mantle = "mantle peridotite"
 
 // write puts a temperature and its reason into a lane's row.
