@@ -161,11 +161,14 @@ func temperatures(k *kind) []report.Temperature {
 	return out
 }
 
-// sigmaOf is the calibration's 1-sigma for a lane, degC.
+// sigmaOf is the calibration's 1-sigma for a lane, degC; 0 where it has none.
 func sigmaOf(k *kind, lane int) float64 {
 	for _, m := range k.methods {
-		if lane < len(m.Components) {
+		if lane < len(m.Sigma.C) {
 			return m.Sigma.C[lane]
+		}
+		if lane < len(m.Components) {
+			return 0
 		}
 		lane -= len(m.Components)
 	}
