@@ -71,7 +71,7 @@ func (s *state) summary(sources []ingest.Source, counts []Count, kinds []*kind, 
 		out.Temperatures = append(out.Temperatures, temperatures(k)...)
 	}
 	for _, d := range found {
-		if d.GroupBy == "all" {
+		if d.GroupBy == "all" && d.Variant == variant {
 			out.Discrepancies = append(out.Discrepancies, d)
 		}
 	}
@@ -149,7 +149,7 @@ func temperatures(k *kind) []report.Temperature {
 		if l.Info == nil && len(have) == 0 {
 			continue
 		}
-		t := report.Temperature{PairKind: k.name, Method: l.Method, Component: l.Component, PublishedKind: l.PublishedKind, N: len(have)}
+		t := report.Temperature{PairKind: k.name, Method: l.Method, Component: l.Component, PublishedKind: l.PublishedKind, Variant: l.Variant, N: len(have)}
 		if len(have) > 0 {
 			t.Low, t.Median, t.High = slices.Min(have), discrepancy.Median(have), slices.Max(have)
 		}

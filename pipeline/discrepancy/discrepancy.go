@@ -127,9 +127,13 @@ func (r *Rows) compare(a, b *Lane, rows []int32) (tables.DiscrepancyRow, bool) {
 	}, true
 }
 
+// derived says whether one method is a function of the other, or both of a third.
 func derived(a, b *Lane) bool {
-	return a.Info != nil && b.Info != nil &&
-		(slices.Contains(a.Info.DerivedFrom, b.Method) || slices.Contains(b.Info.DerivedFrom, a.Method))
+	if a.Info == nil || b.Info == nil || a.Method == b.Method {
+		return false
+	}
+	return slices.Contains(a.Info.DerivedFrom, b.Method) || slices.Contains(b.Info.DerivedFrom, a.Method) ||
+		slices.ContainsFunc(a.Info.DerivedFrom, func(id string) bool { return slices.Contains(b.Info.DerivedFrom, id) })
 }
 
 // groups lists the names that occur, sorted.

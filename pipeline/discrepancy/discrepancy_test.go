@@ -120,6 +120,24 @@ func TestCompare(t *testing.T) {
 	}
 }
 
+// Two methods made from one third are no two witnesses either; the components of
+// one method are still compared.
+func TestSiblingsAreNotCompared(t *testing.T) {
+	one := &method.Info{ID: "one", DerivedFrom: []string{"parent"}}
+	other := &method.Info{ID: "other", DerivedFrom: []string{"parent"}}
+	rows := &Rows{PairKind: "k", Variant: "v",
+		Lanes: []Lane{
+			{Method: "one", Component: "Ab", Info: one, Own: true, T: []float64{1}},
+			{Method: "one", Component: "Or", Info: one, Own: true, T: []float64{3}},
+			{Method: "other", Info: other, Own: true, T: []float64{7}},
+		},
+		Sample: []string{"s"}, Source: []string{"x"}}
+	got := Compare(rows, []Grouping{{By: "all", Group: []string{"all"}}})
+	if len(got) != 1 || got[0].MethodA != "one" || got[0].MethodB != "one" {
+		t.Errorf("%d comparisons, %+v; want Ab minus Or of one method and nothing else", len(got), got)
+	}
+}
+
 func line(r tables.DiscrepancyRow) string {
 	a := r.MethodA
 	if r.ComponentA != "" {

@@ -61,7 +61,7 @@ func on(basis method.Basis, phase chem.Phase, name string, probeMin, probeMax fl
 // spectator is a minor cation that may be absent: not analysed, it counts as zero.
 func spectator(basis method.Basis, phase chem.Phase, name string, probeMin, probeMax float64, cation chem.Cation) *method.Quantity {
 	q := on(basis, phase, name, probeMin, probeMax, cation)
-	q.Name += ", 0 where not analysed"
+	q.Name = name + " in " + string(phase) + " (" + basisName(basis) + "; 0 where not analysed)"
 	q.Leaf.Optional = true
 	return q
 }
