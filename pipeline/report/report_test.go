@@ -1,6 +1,7 @@
 package report
 
 import (
+	"fmt"
 	"strings"
 	"testing"
 
@@ -44,15 +45,18 @@ func TestSummaryLinesFit(t *testing.T) {
 	}
 }
 
-// A comparison across methods and components is left to the table, and counted.
-func TestSummaryLeavesCrossComponentsToTheTable(t *testing.T) {
-	d := 1.0
-	row := func(ma, ca, mb, cb string) tables.DiscrepancyRow {
+// Everything with published temperatures and within a method is listed; between
+// methods only the largest, and the rest is counted.
+func TestSummaryListsTheLargestDisagreements(t *testing.T) {
+	row := func(ma, ca, mb, cb string, d float64) tables.DiscrepancyRow {
 		return tables.DiscrepancyRow{PairKind: "k", MethodA: ma, ComponentA: ca, MethodB: mb, ComponentB: cb, N: 2, MedianDiffC: &d}
 	}
-	s := &Summary{Discrepancies: []tables.DiscrepancyRow{row("k/x", "Ab", "k/y", "Ab"), row("k/x", "Ab", "k/y", "Or"), row("k/x", "Ab", "k/x", "Or"), row("k/x", "Ab", "as-published", "")}}
+	s := &Summary{Discrepancies: []tables.DiscrepancyRow{row("k/x", "Ab", "k/x", "Or", 1), row("k/x", "Ab", "as-published", "", 1)}}
+	for i := range 10 {
+		s.Discrepancies = append(s.Discrepancies, row("k/x", "Ab", fmt.Sprintf("k/m%d", i), "", -float64(i)))
+	}
 	text := s.Text()
-	for want, n := range map[string]int{"x Ab - y Ab": 1, "x Ab - y Or": 0, "x Ab - x Or": 1, "x Ab - as-published": 1, "1 comparisons across components": 1} {
+	for want, n := range map[string]int{"x Ab - x Or": 1, "x Ab - as-published": 1, "x Ab - m9": 1, "x Ab - m2": 1, "x Ab - m1": 0, "x Ab - m0": 0, "2 smaller ones": 1} {
 		if got := strings.Count(text, want); got != n {
 			t.Errorf("summary says %q %d times, want %d:\n%s", want, got, n, text)
 		}

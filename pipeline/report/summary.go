@@ -2,7 +2,9 @@
 package report
 
 import (
+	"cmp"
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 
@@ -40,7 +42,7 @@ type Count struct {
 // Temperature is one method and component over all pairs.
 type Temperature struct {
 	PairKind, Method, Component string
-	PublishedKind               string
+	PublishedKind, Variant      string // Variant: "" on the method's own basis
 	N                           int
 	Median, Low, High           float64 // degC
 	SigmaC                      float64 // calibration 1-sigma, degC
@@ -106,7 +108,7 @@ func (s *Summary) temperatures(b *strings.Builder) {
 		if t.SigmaC > 0 {
 			sigma = fmt.Sprintf("%.0f", t.SigmaC)
 		}
-		name := name(t.PairKind, t.Method, t.Component, t.PublishedKind)
+		name := name(t.PairKind, t.Method, t.Component, t.Variant, t.PublishedKind)
 		if t.N == 0 {
 			fmt.Fprintf(b, "    %-40s %6d\n", name, 0)
 			continue
@@ -125,34 +127,72 @@ func name(kind string, words ...string) string {
 	return strings.Join(slices.DeleteFunc(words, func(w string) bool { return w == "" }), " ")
 }
 
+// listedDisagreements is how many comparisons between methods the summary lists.
+const listedDisagreements = 8
+
 // discrepancies lists the comparisons that say something at a glance: a method's
-// components with each other, one component by two methods, and everything with
-// the published temperatures. The table holds them all.
+// components with each other, everything with the published temperatures, and
+// the largest disagreements between methods. The table holds them all.
 func (s *Summary) discrepancies(b *strings.Builder) {
 	if len(s.Discrepancies) == 0 {
 		return
 	}
 	b.WriteString("\nWhere calibrations disagree, a minus b, degC, over all rows\n")
-	kind, left := "", 0
+	left := 0
+	for _, kind := range s.kinds() {
+		fmt.Fprintf(b, "  %-66s %6s %8s %8s %8s\n", kind, "n", "samples", "median", "SD")
+		var own, published, between []*tables.DiscrepancyRow
+		for i := range s.Discrepancies {
+			d := &s.Discrepancies[i]
+			switch {
+			case d.PairKind != kind:
+			case d.MethodB == discrepancyWithPublished:
+				published = append(published, d)
+			case d.MethodA == d.MethodB:
+				own = append(own, d)
+			default:
+				between = append(between, d)
+			}
+		}
+		slices.SortStableFunc(between, func(x, y *tables.DiscrepancyRow) int {
+			return cmp.Compare(math.Abs(*y.MedianDiffC), math.Abs(*x.MedianDiffC))
+		})
+		kept := min(len(between), listedDisagreements)
+		left += len(between) - kept
+		listed(b, "with the published temperatures", published)
+		listed(b, "components of one method", own)
+		listed(b, "between methods, the largest", between[:kept])
+	}
+	if left > 0 {
+		fmt.Fprintf(b, "  %d smaller ones are in tables/discrepancies.parquet\n", left)
+	}
+}
+
+const discrepancyWithPublished = "as-published"
+
+// kinds lists the pair kinds of the comparisons, each once, as they come.
+func (s *Summary) kinds() []string {
+	var out []string
 	for i := range s.Discrepancies {
-		d := &s.Discrepancies[i]
-		if d.MethodA != d.MethodB && d.ComponentA != d.ComponentB && d.ComponentA != "" && d.ComponentB != "" {
-			left++
-			continue
+		if k := s.Discrepancies[i].PairKind; !slices.Contains(out, k) {
+			out = append(out, k)
 		}
-		if d.PairKind != kind {
-			kind = d.PairKind
-			fmt.Fprintf(b, "  %-60s %6s %8s %8s %8s\n", kind, "n", "samples", "median", "SD")
-		}
+	}
+	return out
+}
+
+func listed(b *strings.Builder, heading string, rows []*tables.DiscrepancyRow) {
+	if len(rows) == 0 {
+		return
+	}
+	fmt.Fprintf(b, "    %s\n", heading)
+	for _, d := range rows {
 		sd := ""
 		if d.SDC != nil {
 			sd = fmt.Sprintf("%.0f", *d.SDC)
 		}
-		pair := name(kind, d.MethodA, d.ComponentA) + " - " + name(kind, d.MethodB, d.ComponentB, d.PublishedKind)
-		fmt.Fprintf(b, "    %-58s %6d %8d %8s %8s\n", pair, d.N, d.NSamples, signed(*d.MedianDiffC), sd)
-	}
-	if left > 0 {
-		fmt.Fprintf(b, "  %d comparisons across components are in tables/discrepancies.parquet\n", left)
+		pair := name(d.PairKind, d.MethodA, d.ComponentA) + " - " + name(d.PairKind, d.MethodB, d.ComponentB, d.PublishedKind)
+		fmt.Fprintf(b, "      %-62s %6d %8d %8s %8s\n", pair, d.N, d.NSamples, signed(*d.MedianDiffC), sd)
 	}
 }
 
