@@ -21,6 +21,12 @@ func (r *reader) check(m *Manifest) {
 	r.within("qc.pyroxene_sum_kept", m.QC.PyroxeneSumKept, "qc.pyroxene_sum_flagged", m.QC.PyroxeneSumFlagged)
 	r.atMost("qc.feldspar_sum_kept", m.QC.FeldsparSumKept, "qc.feldspar_sum_flagged", m.QC.FeldsparSumFlagged)
 	r.atMost("qc.celsian_flagged", m.QC.CelsianFlagged, "qc.celsian_set_aside", m.QC.CelsianSetAside)
+	r.atMost("qc.feldspar_t_site_kept", m.QC.FeldsparTSiteKept, "qc.feldspar_t_site_flagged", m.QC.FeldsparTSiteFlagged)
+	r.atMost("qc.feldspar_a_site_kept", m.QC.FeldsparASiteKept, "qc.feldspar_a_site_flagged", m.QC.FeldsparASiteFlagged)
+	r.ascending("qc.kd_igneous", m.QC.KDIgneous)
+	r.ascending("qc.kd_subsolidus", m.QC.KDSubsolidus)
+	r.prefer(m)
+	r.different("qc.prefer", m.QC.Prefer)
 	r.line(&m.Pressure)
 	r.different("pairing.rules", m.Pairing.Rules)
 	r.atMost("pairing.touching_um", m.Pairing.TouchingUm, "pairing.nearest_um", m.Pairing.NearestUm)
@@ -328,12 +334,35 @@ func (r *reader) within(kept string, k [2]float64, flagged string, f [2]float64)
 		path string
 		v    [2]float64
 	}{{kept, k}, {flagged, f}} {
-		if l.v[0] > l.v[1] && !r.bad[l.path] {
-			r.complain(l.path, r.at[l.path], "value", "the lower limit first", fmt.Sprintf("[%g, %g]", l.v[0], l.v[1]), fmt.Sprintf("write [%g, %g]", l.v[1], l.v[0]))
-		}
+		r.ascending(l.path, l.v)
 	}
 	if !r.bad[kept] && !r.bad[flagged] && (f[0] > k[0] || f[1] < k[1]) {
 		r.order(kept, fmt.Sprintf("[%g, %g]", k[0], k[1]), flagged, fmt.Sprintf("[%g, %g]", f[0], f[1]))
+	}
+}
+
+func (r *reader) ascending(p string, v [2]float64) {
+	if v[0] > v[1] && !r.bad[p] {
+		r.complain(p, r.at[p], "value", "the lower limit first", fmt.Sprintf("[%g, %g]", v[0], v[1]), fmt.Sprintf("write [%g, %g]", v[1], v[0]))
+	}
+}
+
+// prefer reports preferred sources that there are none of.
+func (r *reader) prefer(m *Manifest) {
+	var ids []string
+	for i := range m.Sources {
+		ids = append(ids, m.Sources[i].ID)
+	}
+	for i, id := range m.QC.Prefer {
+		if slices.Contains(ids, id) {
+			continue
+		}
+		do := ""
+		if near := Nearest(id, ids); near != "" {
+			do = "did you mean " + problem.Quote(near) + "?"
+		}
+		p := fmt.Sprintf("qc.prefer[%d]", i)
+		r.complain(p, r.at[p], "source", "the id of a source of this manifest", problem.Quote(id), do)
 	}
 }
 

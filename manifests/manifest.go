@@ -24,7 +24,7 @@ type Manifest struct {
 	Sources []Source `toml:"source" json:"source" jsonschema:"required,minItems=1"`
 	// How the formula columns of the analyses table are made.
 	Normalisation Normalisation `toml:"normalisation" json:"normalisation"`
-	// The limits inside which an analysis is kept or flagged.
+	// The limits inside which an analysis, a pair or a temperature is kept or flagged.
 	QC QC `toml:"qc" json:"qc"`
 	// How analyses become pairs.
 	Pairing Pairing `toml:"pairing" json:"pairing"`
@@ -122,8 +122,9 @@ type Normalisation struct {
 	EndMemberTolerance float64 `toml:"end_member_tolerance" json:"end_member_tolerance" jsonschema:"minimum=0,maximum=0.5"`
 }
 
-// QC holds the limits. An analysis inside a kept limit is kept, inside the
-// flagged one it is used and marked, beyond it is set aside.
+// QC holds the limits. A row inside a kept limit is kept, inside the flagged one
+// it is used and marked, beyond it is set aside; a limit that stands alone only
+// marks.
 type QC struct {
 	// Oxide totals kept, wt%, with Fe2O3 by the basis used. Default: 98 to 102 (common practice, no source).
 	TotalsKeptWt [2]float64 `toml:"totals_kept_wt" json:"totals_kept_wt" jsonschema:"minimum=0,maximum=200"`
@@ -141,6 +142,52 @@ type QC struct {
 	CelsianFlagged float64 `toml:"celsian_flagged" json:"celsian_flagged" jsonschema:"minimum=0,maximum=1"`
 	// Celsian above which a feldspar is set aside, mole fraction. Default: 0.05 (common practice, no source).
 	CelsianSetAside float64 `toml:"celsian_set_aside" json:"celsian_set_aside" jsonschema:"minimum=0,maximum=1"`
+	// How far a feldspar's T site, Si + Al + Fe3+ + Ti on 8 O, may lie from 4 and be kept, apfu. Default: 0.02 (common practice, no source).
+	FeldsparTSiteKept float64 `toml:"feldspar_t_site_kept" json:"feldspar_t_site_kept" jsonschema:"minimum=0,maximum=4"`
+	// How far it may lie from 4 and be flagged, apfu; beyond, set aside. Default: 0.05 (common practice, no source).
+	FeldsparTSiteFlagged float64 `toml:"feldspar_t_site_flagged" json:"feldspar_t_site_flagged" jsonschema:"minimum=0,maximum=4"`
+	// How far a feldspar's A site, Na + K + Ca + Ba + Sr on 8 O, may lie from 1 and be kept, apfu. Default: 0.02 (common practice, no source).
+	FeldsparASiteKept float64 `toml:"feldspar_a_site_kept" json:"feldspar_a_site_kept" jsonschema:"minimum=0,maximum=1"`
+	// How far it may lie from 1 and be flagged, apfu; beyond, set aside. Default: 0.05 (common practice, no source).
+	FeldsparASiteFlagged float64 `toml:"feldspar_a_site_flagged" json:"feldspar_a_site_flagged" jsonschema:"minimum=0,maximum=1"`
+	// How far a feldspar's Al + Fe3+ may lie from 1 + Ca + Ba + Sr before it is flagged, apfu on 8 O. Default: 0.02 (common practice, no source).
+	CoupledExchangeFlagged float64 `toml:"coupled_exchange_flagged" json:"coupled_exchange_flagged" jsonschema:"minimum=0,maximum=4"`
+	// Iron, all as FeO, above which a feldspar is flagged as contaminated, wt%. Default: 1 (common practice, no source).
+	FeldsparFeOFlaggedWt float64 `toml:"feldspar_feo_flagged_wt" json:"feldspar_feo_flagged_wt" jsonschema:"minimum=0,maximum=100"`
+	// MgO above which a feldspar is flagged as contaminated, wt%. Default: 0.1 (common practice, no source).
+	FeldsparMgOFlaggedWt float64 `toml:"feldspar_mgo_flagged_wt" json:"feldspar_mgo_flagged_wt" jsonschema:"minimum=0,maximum=100"`
+	// How far the charges of a formula given as apfu may lie from twice its oxygens before it is flagged. Default: 0.05, ten cations rounded to .01 (common practice, no source).
+	ChargeFlagged float64 `toml:"charge_flagged" json:"charge_flagged" jsonschema:"minimum=0,maximum=48"`
+	// Ca of an orthopyroxene above which its name is doubted, apfu on 6 O. Default: 0.2 (common practice, no source).
+	OpxCaFlagged float64 `toml:"opx_ca_flagged" json:"opx_ca_flagged" jsonschema:"minimum=0,maximum=2"`
+	// Ca of a clinopyroxene below which its name is doubted, apfu on 6 O. Default: 0.4 (common practice, no source).
+	CpxCaFlagged float64 `toml:"cpx_ca_flagged" json:"cpx_ca_flagged" jsonschema:"minimum=0,maximum=2"`
+	// Or of a plagioclase above which its name is doubted, mole fraction. Default: 0.5, by the definition of the names.
+	PlOrFlagged float64 `toml:"pl_or_flagged" json:"pl_or_flagged" jsonschema:"minimum=0,maximum=1"`
+	// An of an alkali feldspar above which its name is doubted, mole fraction. Default: 0.5, by the definition of the names.
+	AfsAnFlagged float64 `toml:"afs_an_flagged" json:"afs_an_flagged" jsonschema:"minimum=0,maximum=1"`
+	// How far Si + Al of a pyroxene may fall short of 2 before it is flagged, apfu on 6 O. Default: 0.02 (common practice, no source).
+	PyroxeneTSiteFlagged float64 `toml:"pyroxene_t_site_flagged" json:"pyroxene_t_site_flagged" jsonschema:"minimum=0,maximum=2"`
+	// How far a reported total may lie from the sum of the oxides before it is flagged, wt%. Default: 0.3 (common practice, no source).
+	ReportedTotalFlaggedWt float64 `toml:"reported_total_flagged_wt" json:"reported_total_flagged_wt" jsonschema:"minimum=0,maximum=100"`
+	// How far a reported end member may lie from the one of the oxides before it is flagged, mole fraction. Default: 0.01 (common practice, no source).
+	ReportedEndMemberFlagged float64 `toml:"reported_end_member_flagged" json:"reported_end_member_flagged" jsonschema:"minimum=0,maximum=1"`
+	// Rows of one mineral a source must have before a column of it is called wrong; with fewer the answer is "cannot tell". Default: 10 (common practice, no source).
+	ColumnRows uint64 `toml:"column_rows" json:"column_rows" jsonschema:"minimum=0"`
+	// Sources whose copy of a duplicated analysis is kept, the best first; the rest follow in the order of the manifest. Default: none.
+	Prefer []string `toml:"prefer" json:"prefer,omitempty"`
+	// (Fe/Mg)cpx / (Fe/Mg)opx, total iron, of igneous pairs; outside, the temperatures of methods for igneous rocks are set aside. Default: 0.95 to 1.23, that is 1.09 +- 0.14, Putirka (2008) Rev Mineral Geochem 69:61-120 (from memory).
+	KDIgneous [2]float64 `toml:"kd_igneous" json:"kd_igneous" jsonschema:"minimum=0,maximum=10"`
+	// The same of subsolidus pairs; a pair outside both ranges is flagged. Default: 0.5 to 0.9, that is 0.7 +- 0.2, Putirka (2008) (from memory).
+	KDSubsolidus [2]float64 `toml:"kd_subsolidus" json:"kd_subsolidus" jsonschema:"minimum=0,maximum=10"`
+	// Spread of T_Ab, T_Or and T_An of one method above which these temperatures are flagged, degC. Default: 90 (common practice, no source).
+	ConcordanceC float64 `toml:"concordance_c" json:"concordance_c" jsonschema:"minimum=0,maximum=2000"`
+	// By how many combined 1-sigma the temperature of Ca may differ from that of Fe-Mg before both are flagged as possibly reset. Default: 2 (common practice, no source).
+	ResetSigma float64 `toml:"reset_sigma" json:"reset_sigma" jsonschema:"minimum=0,maximum=100"`
+	// An of plagioclase above which two-feldspar temperatures are flagged, mole fraction: its structure is I-1 there, and no model here is of it. Default: 0.65, the low end of .65 to .70 (from memory).
+	PlAnFlagged float64 `toml:"pl_an_flagged" json:"pl_an_flagged" jsonschema:"minimum=0,maximum=1"`
+	// A feldspar pair whose Ab and Or both differ by less lies close to the critical curve and is flagged, mole fraction. Default: 0.1 (common practice, no source).
+	CriticalDistanceFlagged float64 `toml:"critical_distance_flagged" json:"critical_distance_flagged" jsonschema:"minimum=0,maximum=1"`
 }
 
 // Pairing says which analyses are taken as coexisting.

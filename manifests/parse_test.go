@@ -140,7 +140,11 @@ func TestDefaults(t *testing.T) {
 	const want = `{"compilation":{"id":"least","title":"Least"},"source":[{"id":"a","file":"a.csv","separator":"comma","decimal":"point","encoding":"utf-8","composition":"oxide wt%",` +
 		`"not_analysed":["n.a.","na","n/a"],"below_detection":["b.d.l.","bdl","b.d.","bd","<dl"],"missing":[""]}],` +
 		`"normalisation":{"fe3":"as measured","end_member_tolerance":0.002},` +
-		`"qc":{"totals_kept_wt":[98,102],"totals_flagged_wt":[97,102.5],"feldspar_sum_kept":0.02,"feldspar_sum_flagged":0.05,"pyroxene_sum_kept":[3.98,4.04],"pyroxene_sum_flagged":[3.96,4.06],"celsian_flagged":0.01,"celsian_set_aside":0.05},` +
+		`"qc":{"totals_kept_wt":[98,102],"totals_flagged_wt":[97,102.5],"feldspar_sum_kept":0.02,"feldspar_sum_flagged":0.05,"pyroxene_sum_kept":[3.98,4.04],"pyroxene_sum_flagged":[3.96,4.06],"celsian_flagged":0.01,"celsian_set_aside":0.05,` +
+		`"feldspar_t_site_kept":0.02,"feldspar_t_site_flagged":0.05,"feldspar_a_site_kept":0.02,"feldspar_a_site_flagged":0.05,"coupled_exchange_flagged":0.02,` +
+		`"feldspar_feo_flagged_wt":1,"feldspar_mgo_flagged_wt":0.1,"charge_flagged":0.05,"opx_ca_flagged":0.2,"cpx_ca_flagged":0.4,"pl_or_flagged":0.5,"afs_an_flagged":0.5,` +
+		`"pyroxene_t_site_flagged":0.02,"reported_total_flagged_wt":0.3,"reported_end_member_flagged":0.01,"column_rows":10,` +
+		`"kd_igneous":[0.95,1.23],"kd_subsolidus":[0.5,0.9],"concordance_c":90,"reset_sigma":2,"pl_an_flagged":0.65,"critical_distance_flagged":0.1},` +
 		`"pairing":{"rules":["listed","touching rims","nearest"],"nearest_um":500,"touching_um":50},"reintegration":{"volumes":"high"},"pressure":{"default_sigma_kbar":1.5},"methods":{},` +
 		`"uncertainty":{"seed":1,"oxide_sigma_relative":0.007,"oxide_sigma_counting_wt":0.0009,"oxide_sigma_floor_wt2":0.0002},"groups":{}}`
 	if got := string(parsed(t, smallest).Canonical()); got != want {
