@@ -3,6 +3,7 @@ package pipeline
 import (
 	"strconv"
 	"strings"
+	"unique"
 
 	"tieline/pipeline/tables"
 	"tieline/qc"
@@ -19,21 +20,26 @@ type judged struct {
 	reasons  []string
 }
 
-// judgeAnalyses works out the formulae, applies the rules for analyses, and
-// hands what they leave to write, block by block in order.
+// judgeAnalyses works out the formulae, applies the rules for analyses and for
+// whole sources, and hands what they leave to write: first what was found on
+// sources, then block by block in order.
 func (s *state) judgeAnalyses(opt Options, write func(judged) error) (verdicts, error) {
 	n := s.all.Len()
 	s.verdicts = make([]qc.Verdict, 0, n)
 	var counts verdicts
+	surveyed := qc.Survey(s.manifest, s.all)
+	if err := write(judged{findings: sourceFindings(surveyed)}); err != nil {
+		return counts, err
+	}
 	blocks := (n + blockRows - 1) / blockRows
 	err := ordered(blocks, opt.Workers, func(_, block int) (judged, error) {
 		from := block * blockRows
-		return s.judgeBlock(from, min(from+blockRows, n)), nil
+		return s.judgeBlock(surveyed, from, min(from+blockRows, n)), nil
 	}, func(block int, r judged) error {
 		for i, v := range r.verdicts {
 			counts[v]++
 			if v != qc.Kept {
-				s.reasons[int32(len(s.verdicts))] = r.reasons[i]
+				s.reasons[int32(len(s.verdicts))] = unique.Make(r.reasons[i]).Value() // many rows have the same
 			}
 			s.verdicts = append(s.verdicts, v)
 		}
@@ -43,7 +49,17 @@ func (s *state) judgeAnalyses(opt Options, write func(judged) error) (verdicts, 
 	return counts, err
 }
 
-func (s *state) judgeBlock(from, to int) judged {
+// sourceFindings makes the qc table's rows of what was found on whole columns.
+func sourceFindings(surveyed *qc.Surveyed) []tables.FindingRow {
+	var out []tables.FindingRow
+	for _, f := range surveyed.Sources {
+		out = append(out, tables.FindingRow{RowKind: "source", RowID: f.Source + ":" + f.Column, Rule: f.Rule, Effect: f.Effect.String(),
+			Value: f.Value, Limit: f.Limit, Detail: f.Detail, Source: f.Source})
+	}
+	return out
+}
+
+func (s *state) judgeBlock(surveyed *qc.Surveyed, from, to int) judged {
 	r := judged{rows: make([]tables.AnalysisRow, 0, to-from)}
 	var c chem.Composition
 	for i := from; i < to; i++ {
@@ -51,8 +67,17 @@ func (s *state) judgeBlock(from, to int) judged {
 		b.Composition(row, &c)
 		w := workOut(s.manifest.Normalisation.Fe3, b.Phase(row), &c)
 		seen := qc.Analysis{Phase: b.Phase(row), Composition: &c, Formula: &w.formula, Total: w.total,
-			PyroxeneSum: w.pyroxeneSum, Celsian: w.celsian, EndMemberSum: b.EndMemberSum(row), SetAside: b.Text(tables.SetAside, row)}
-		findings := qc.OfAnalysis(s.manifest, &seen)
+			Celsian: w.celsian, EndMemberSum: b.EndMemberSum(row), SetAside: b.Text(tables.SetAside, row)}
+		if w.hasPyroxene {
+			seen.Pyroxene = &w.pyroxene
+		}
+		if w.hasFeldspar {
+			seen.Feldspar = &w.feldspar
+		}
+		if v, ok := b.Number(tables.ReportedTotal, row); ok {
+			seen.ReportedTotal = &v
+		}
+		findings := append(qc.OfAnalysis(s.manifest, &seen), surveyed.Of(i)...)
 		if seen.SetAside == "" {
 			findings = append(findings, qc.OfCoverage(b.Phase(row))...)
 		}
@@ -77,7 +102,8 @@ type worked struct {
 	hasFeldspar bool
 	total       float64
 	hasTotal    bool
-	pyroxeneSum float64
+	pyroxene    formula.Formula // 6 O, all Fe2+
+	hasPyroxene bool
 }
 
 func workOut(scheme string, phase chem.Phase, c *chem.Composition) worked {
@@ -92,7 +118,7 @@ func workOut(scheme string, phase chem.Phase, c *chem.Composition) worked {
 		ab, or, an, cn, why := formula.Feldspar(c)
 		w.feldspar, w.celsian, w.hasFeldspar = [3]float64{ab, or, an}, cn, why == method.OK
 	case chem.Opx, chem.Cpx:
-		w.pyroxeneSum = formula.Of(c, method.Basis{Oxygens: 6, Cations: 4, Ferric: method.AllFe2}).Sum
+		w.pyroxene, w.hasPyroxene = formula.Of(c, method.Basis{Oxygens: 6, Cations: 4, Ferric: method.AllFe2}), true
 	}
 	return w
 }

@@ -3,6 +3,7 @@ package pipeline
 import (
 	"strconv"
 	"strings"
+	"unique"
 
 	"tieline/pipeline/lineage"
 	"tieline/pipeline/pairing"
@@ -75,7 +76,7 @@ func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
 		bx, rx := s.all.At(int(x))
 		v, reasons = qc.Inherit(v, reasons, s.verdicts[x], string(bx.Phase(rx))+": "+s.reasons[x])
 	}
-	st.verdict, st.reasons = v, reasons
+	st.verdict, st.reasons = v, unique.Make(reasons).Value() // many rows have the same
 	kind := pairing.Kinds[p.Kind]
 	st.lineage = lineage.New("tieline pair 1").Text(kind.Name).Text(p.Rule.String()).
 		Digest(a.Lineage(ra)).Digest(b.Lineage(rb)).Sum()

@@ -8,19 +8,25 @@ import (
 	"tieline/manifests"
 	"tieline/thermo/chem"
 	"tieline/thermo/formula"
+	"tieline/thermo/method"
 )
 
 // Analysis is what the rules see of one analysis.
 type Analysis struct {
-	Phase        chem.Phase
-	Composition  *chem.Composition
-	Formula      *formula.Formula // on the basis of the analyses table
-	Total        float64          // wt%, iron by the basis used; 0 where the source gives no oxides
-	PyroxeneSum  float64          // cations per 6 O, all Fe2+; pyroxenes only
-	Celsian      float64          // mole fraction before it is taken out; feldspars only
-	EndMemberSum float64          // before renormalising; 0 where none are given
-	SetAside     string           // why ingest set the row aside
+	Phase         chem.Phase
+	Composition   *chem.Composition
+	Formula       *formula.Formula // on the basis of the analyses table
+	Total         float64          // wt%, iron by the basis used; 0 where the source gives no oxides
+	Pyroxene      *formula.Formula // cations per 6 O, all Fe2+; nil but for pyroxenes
+	Feldspar      *[3]float64      // Ab, Or, An; nil but for feldspars that have them
+	Celsian       float64          // mole fraction before it is taken out; feldspars only
+	EndMemberSum  float64          // before renormalising; 0 where none are given
+	ReportedTotal *float64         // wt%, as the source prints it; nil where it prints none
+	SetAside      string           // why ingest set the row aside
 }
+
+// eps is what two decimal numbers may differ by in binary and be equal.
+const eps = 1e-9
 
 // majors are the oxides without which a formula says nothing, by role.
 var majors = map[chem.Phase][]chem.Oxide{
@@ -32,8 +38,8 @@ var majors = map[chem.Phase][]chem.Oxide{
 
 // minors are the oxides whose absence is flagged and counted as zero, by role.
 var minors = map[chem.Phase][]chem.Oxide{
-	chem.Opx: {chem.TiO2, chem.Cr2O3, chem.MnO, chem.Na2O},
-	chem.Cpx: {chem.TiO2, chem.Cr2O3, chem.MnO},
+	chem.Opx: {chem.TiO2, chem.Cr2O3, chem.MnO, chem.Na2O, chem.K2O},
+	chem.Cpx: {chem.TiO2, chem.Cr2O3, chem.MnO, chem.K2O},
 }
 
 // OfAnalysis applies the rules for one analysis.
@@ -49,7 +55,17 @@ func OfAnalysis(m *manifests.Manifest, a *Analysis) []Finding {
 	out = append(out, negative(a)...)
 	out = append(out, total(limits, a)...)
 	out = append(out, cationSum(limits, a)...)
-	return append(out, celsian(limits, a)...)
+	out = append(out, celsian(limits, a)...)
+	out = append(out, reported(limits, a)...)
+	out = append(out, charge(limits, a)...)
+	out = append(out, identity(limits, a)...)
+	switch a.Phase.Role() {
+	case chem.Afs, chem.Pl:
+		return append(out, feldspar(limits, a)...)
+	case chem.Opx, chem.Cpx:
+		return append(out, pyroxene(limits, a)...)
+	}
+	return out
 }
 
 func endMemberSum(tol float64, a *Analysis) []Finding {
@@ -61,7 +77,7 @@ func endMemberSum(tol float64, a *Analysis) []Finding {
 			Detail: "end-member fractions sum to " + text(a.EndMemberSum, 4)}}
 	}
 	// A sum printed as .998 is off by .002, not by the .0020000000000000018 of binary fractions.
-	if math.Abs(a.EndMemberSum-1) <= tol+1e-9 {
+	if math.Abs(a.EndMemberSum-1) <= tol+eps {
 		return nil
 	}
 	return []Finding{{Rule: "end-member sum", Effect: Flagged, Value: number(a.EndMemberSum), Limit: "1 +- " + text(tol, 4),
@@ -92,7 +108,7 @@ func components(a *Analysis) []Finding {
 // and Al leave room for celsian (BaAl2Si2O8 takes K's place and one Si's).
 func bariumUnknown(a *Analysis) Finding {
 	f := Finding{Rule: "BaO not measured", Effect: Noted, Limit: "A site 0.98, Al - 1 - Ca 0.02", Detail: "BaO not measured; nothing in the formula asks for it"}
-	if a.Formula.Why != 0 {
+	if a.Formula.Why != method.OK {
 		return f
 	}
 	p := &a.Formula.Apfu
@@ -158,7 +174,7 @@ func total(limits *manifests.QC, a *Analysis) []Finding {
 }
 
 func cationSum(limits *manifests.QC, a *Analysis) []Finding {
-	if a.Formula.Why != 0 {
+	if a.Formula.Why != method.OK {
 		return nil
 	}
 	switch a.Phase.Role() {
@@ -167,7 +183,7 @@ func cationSum(limits *manifests.QC, a *Analysis) []Finding {
 		return band("cation sum", a.Formula.Sum, 5-k, 5+k, 5-f, 5+f, 3, "feldspar cation sum", " on 8 O")
 	case chem.Opx, chem.Cpx:
 		k, f := limits.PyroxeneSumKept, limits.PyroxeneSumFlagged
-		return band("cation sum", a.PyroxeneSum, k[0], k[1], f[0], f[1], 3, "pyroxene cation sum", " on 6 O, all Fe2+")
+		return band("cation sum", a.Pyroxene.Sum, k[0], k[1], f[0], f[1], 3, "pyroxene cation sum", " on 6 O, all Fe2+")
 	}
 	return nil
 }
@@ -175,7 +191,6 @@ func cationSum(limits *manifests.QC, a *Analysis) []Finding {
 // band keeps v inside [k0, k1], flags it inside [f0, f1], sets it aside beyond.
 // Limits are inclusive to 1e-9: they are decimal, v is binary.
 func band(rule string, v, k0, k1, f0, f1 float64, digits int, what, unit string) []Finding {
-	const eps = 1e-9
 	if v >= k0-eps && v <= k1+eps {
 		return nil
 	}

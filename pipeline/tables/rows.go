@@ -287,8 +287,8 @@ type DiscrepancyRow struct {
 
 // FindingRow is one rule of quality control that fired on one row.
 type FindingRow struct {
-	RowKind    string   `parquet:"row_kind" doc:"The table of the row: analysis, pair or estimate"`
-	RowID      string   `parquet:"row_id" doc:"analysis_id, pair_id or estimate_id of the row"`
+	RowKind    string   `parquet:"row_kind" doc:"The table of the row: analysis, pair or estimate; source where the finding is on a whole column or sample of a source"`
+	RowID      string   `parquet:"row_id" doc:"analysis_id, pair_id or estimate_id of the row; source:column for a source"`
 	Rule       string   `parquet:"rule" doc:"The rule that fired"`
 	Effect     string   `parquet:"effect" doc:"noted, flagged (the row is used) or set aside (it is not)"`
 	Value      *float64 `parquet:"value,optional" unit:"as the rule" doc:"The value the rule looked at; NULL where it looks at none"`

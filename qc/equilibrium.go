@@ -1,0 +1,98 @@
+package qc
+
+import (
+	"fmt"
+	"math"
+
+	"tieline/manifests"
+)
+
+// Distribution holds a pyroxene pair's (Fe/Mg)cpx / (Fe/Mg)opx, total iron,
+// against what coexisting pyroxenes show: igneous pairs 1.09 +- 0.14, subsolidus
+// ones about 0.7 +- 0.2. Putirka KD (2008) Rev Mineral Geochem 69:61-120, from
+// memory. A filter, no thermometer.
+func Distribution(limits *manifests.QC, kd float64) []Finding {
+	i, s := limits.KDIgneous, limits.KDSubsolidus
+	if inside(kd, i) || inside(kd, s) {
+		return nil
+	}
+	return []Finding{{Rule: "Fe-Mg distribution", Effect: Flagged, Value: number(kd), Limit: between(s) + " or " + between(i),
+		Detail: fmt.Sprintf("(Fe/Mg)cpx / (Fe/Mg)opx is %s, of neither subsolidus (%s) nor igneous pairs (%s)", text(kd, 3), between(s), between(i))}}
+}
+
+// IgneousDistribution sets aside the temperatures of a method made for igneous
+// pyroxenes (Putirka 2008, equations 36 and 37) where the distribution is not
+// theirs. It is asked for each such estimate.
+func IgneousDistribution(limits *manifests.QC, kd float64) []Finding {
+	if inside(kd, limits.KDIgneous) {
+		return nil
+	}
+	r := between(limits.KDIgneous)
+	return []Finding{{Rule: "igneous Fe-Mg distribution", Effect: SetAside, Value: number(kd), Limit: r,
+		Detail: fmt.Sprintf("(Fe/Mg)cpx / (Fe/Mg)opx is %s, outside the %s of igneous pairs the method is for", text(kd, 3), r)}}
+}
+
+// FeldsparPair applies the rules on the two compositions of a feldspar pair,
+// each Ab, Or, An.
+func FeldsparPair(limits *manifests.QC, afs, pl [3]float64) []Finding {
+	var out []Finding
+	if an := pl[2]; an > limits.PlAnFlagged+eps {
+		l := text(limits.PlAnFlagged, 3)
+		out = append(out, Finding{Rule: "I-1 plagioclase", Effect: Flagged, Value: number(an), Limit: "at most " + l,
+			Detail: fmt.Sprintf("An in plagioclase is %s, above %s: its structure is I-1 there, and no model here is of it", text(an, 3), l)})
+	}
+	ab, or, limit := math.Abs(afs[0]-pl[0]), math.Abs(afs[1]-pl[1]), limits.CriticalDistanceFlagged
+	if ab < limit-eps && or < limit-eps {
+		out = append(out, Finding{Rule: "close to the critical curve", Effect: Flagged, Value: number(math.Max(ab, or)), Limit: "at least " + text(limit, 3),
+			Detail: fmt.Sprintf("Ab differs by %s and Or by %s between the feldspars, both below %s: close to the critical curve, where small errors move T far", text(ab, 3), text(or, 3), text(limit, 3))})
+	}
+	return out
+}
+
+// Concordance holds the spread of the temperatures one method gives from Ab, Or
+// and An of one pair against the limit, degC. Absent ones are nil; those set
+// aside on their own are not passed. The finding goes to each of them.
+func Concordance(limits *manifests.QC, ts [3]*float64) []Finding {
+	n, low, high := 0, 0.0, 0.0
+	for _, t := range ts {
+		if t == nil {
+			continue
+		}
+		if n == 0 || *t < low {
+			low = *t
+		}
+		if n == 0 || *t > high {
+			high = *t
+		}
+		n++
+	}
+	spread := high - low
+	if spread <= limits.ConcordanceC+eps {
+		return nil
+	}
+	return []Finding{{Rule: "concordance", Effect: Flagged, Value: number(spread), Limit: text(limits.ConcordanceC, 1) + " degC",
+		Detail: fmt.Sprintf("the components' temperatures spread over %s degC, from %s to %s, beyond %s: not in equilibrium, reset on cooling, or at another pressure",
+			text(spread, 0), text(low, 0), text(high, 0), text(limits.ConcordanceC, 1))}}
+}
+
+// Reset holds the temperature of Ca exchange against that of Fe-Mg exchange of
+// one pair, with the 1-sigma of each, all degC. Fe-Mg closes last on cooling.
+// The finding goes to both estimates.
+func Reset(limits *manifests.QC, ca, caSigma, feMg, feMgSigma float64) []Finding {
+	diff, sigma := ca-feMg, math.Sqrt(float64(caSigma*caSigma)+float64(feMgSigma*feMgSigma))
+	limit := float64(limits.ResetSigma * sigma)
+	if math.Abs(diff) <= limit+eps {
+		return nil
+	}
+	why := "Fe-Mg was reset on cooling, or the pair is not in equilibrium"
+	if diff < 0 {
+		why = "the pair is not in equilibrium, or ferric iron was not what was taken"
+	}
+	return []Finding{{Rule: "possible resetting", Effect: Flagged, Value: number(diff), Limit: "0 +- " + text(limit, 0) + " degC",
+		Detail: fmt.Sprintf("T of Ca is %s degC from T of Fe-Mg (%s and %s), beyond %s combined sigma (%s): %s",
+			text(diff, 0), text(ca, 0), text(feMg, 0), text(limits.ResetSigma, 1), text(limit, 0), why)}}
+}
+
+func inside(v float64, r [2]float64) bool { return v >= r[0]-eps && v <= r[1]+eps }
+
+func between(r [2]float64) string { return text(r[0], 3) + " to " + text(r[1], 3) }
