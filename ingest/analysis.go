@@ -146,7 +146,7 @@ func (a *analyses) accept(c *column, cell string, r reading) reading {
 	report := &a.plan.reports[c.report]
 	if r.state == chem.Measured {
 		a.enc.Text(cell)
-		report.number(r.value)
+		report.number(r.given)
 		return r
 	}
 	a.enc.List(2).Text(cell).Text(r.state.String())

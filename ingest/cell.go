@@ -64,6 +64,7 @@ func (c *cells) marked(cell string) (chem.State, bool) {
 // reading is what a number cell says. fault is why it says nothing.
 type reading struct {
 	value float64 // or the detection limit, 0 where none is stated
+	given float64 // before it was brought to another unit
 	state chem.State
 	fault cellFault
 }
@@ -86,7 +87,7 @@ func (c *cells) number(cell string) reading {
 	if fault != readable {
 		return reading{fault: fault}
 	}
-	return reading{value: x, state: chem.Measured}
+	return reading{value: x, given: x, state: chem.Measured}
 }
 
 // sigma reads a 1-sigma. A word for not analysed or below detection says that

@@ -4,9 +4,11 @@ import (
 	"crypto/sha256"
 	"fmt"
 	"math"
+	"path/filepath"
 	"strings"
 	"testing"
 
+	"tieline/manifests"
 	"tieline/pipeline/tables"
 	"tieline/thermo/chem"
 )
@@ -224,7 +226,7 @@ func TestReport(t *testing.T) {
 	want := []Column{
 		{Header: "Sample", Quantity: "sample", Position: 1}, {Header: "note", Position: 2}, {Header: "Mineral", Quantity: "phase", Position: 3},
 		{Header: "SiO2", Quantity: "SiO2", Position: 4, Numbers: 2, Missing: 1, NotAnalysed: 1, BelowDetection: 2, Min: 58, Max: 60},
-		{Header: "P (GPa)", Quantity: "p_gpa", Position: 5, Numbers: 2, Missing: 4, Min: 5, Max: 10},
+		{Header: "P (GPa)", Quantity: "p_gpa", Position: 5, Numbers: 2, Missing: 4, Min: 0.5, Max: 1},
 	}
 	for i, w := range want {
 		if s.Columns[i] != w {
@@ -308,5 +310,29 @@ func TestCells(t *testing.T) {
 	s.File = "none.csv"
 	if _, _, err := Cells(root, s, 4); err == nil || !strings.HasPrefix(err.Error(), "none.csv: no such file") {
 		t.Errorf("cells of a file that is not there: %v", err)
+	}
+}
+
+// The compilations that ship read without a problem, every row of them.
+func TestShippedCompilations(t *testing.T) {
+	found, err := filepath.Glob("../manifests/*/" + manifests.FileName)
+	if err != nil || len(found) == 0 {
+		t.Fatalf("no compilation found: %v", err)
+	}
+	for _, path := range found {
+		m, root, err := manifests.Load(path)
+		if err != nil {
+			t.Errorf("%s: %v", path, err)
+			continue
+		}
+		all, sources, problems := Read(root, m, nil)
+		root.Close()
+		rows := 0
+		for _, s := range sources {
+			rows += s.Rows
+		}
+		if problems.Len() > 0 || all.Len() == 0 || all.Len() != rows {
+			t.Errorf("%s: %d rows gave %d analyses, problems: %v", path, rows, all.Len(), problems.Err())
+		}
 	}
 }

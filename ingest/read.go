@@ -39,7 +39,7 @@ type Column struct {
 	Missing        int     `json:"missing"`
 	NotAnalysed    int     `json:"not_analysed"`
 	BelowDetection int     `json:"below_detection"`
-	Min            float64 `json:"min"` // of the numbers, in the unit of the tables; 0 where there are none
+	Min            float64 `json:"min"` // of the numbers, as given; 0 where there are none
 	Max            float64 `json:"max"`
 }
 
