@@ -24,7 +24,7 @@ var layers = [][]string{
 	{"pipeline/tables"},
 	{"manifests"},
 	{"ingest", "qc"},
-	{"pipeline/folder", "pipeline/pairing", "pipeline/discrepancy", "pipeline/report"},
+	{"pipeline/folder", "pipeline/pairing", "pipeline/reintegration", "pipeline/discrepancy", "pipeline/report"},
 	{"pipeline"},
 	{"cmd/tieline"},
 }

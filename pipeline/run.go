@@ -169,6 +169,7 @@ func read(m *manifests.Manifest, root *os.Root, opt Options) (*state, []ingest.S
 	}
 	s := newState(m, methods)
 	s.all = all
+	s.reintegrate()
 	return s, sources, nil
 }
 

@@ -33,8 +33,10 @@ type state struct {
 	settings map[string]string               // of sources, by id
 
 	all      *tables.Analyses
-	verdicts []qc.Verdict     // per analysis
-	reasons  map[int32]string // of analyses not kept
+	parts    map[int32][]int32      // of re-integrated analyses
+	ofParts  map[int32][]qc.Finding // what re-integration says of an analysis
+	verdicts []qc.Verdict           // per analysis
+	reasons  map[int32]string       // of analyses not kept
 
 	pairs     []pairing.Pair
 	pair      []pairState // per pair

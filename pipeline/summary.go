@@ -120,6 +120,11 @@ func (s *state) sourceCounts(sources []ingest.Source) []report.Source {
 	for _, b := range s.all.Batches {
 		r := &out[at[b.Source]]
 		for range b.Len() {
+			if s.parts[int32(i)] != nil {
+				r.Reintegrated++
+				i++
+				continue
+			}
 			switch s.verdicts[i] {
 			case qc.Kept:
 				r.Kept++
@@ -199,6 +204,9 @@ func (s *state) cautions(kinds []*kind) []string {
 	}
 	if slices.ContainsFunc(kinds, func(k *kind) bool { return k.name == "two-feldspar" && len(k.items) > 0 }) {
 		out = append(out, "The two-feldspar models here are for disordered feldspars (sanidine, high albite); a feldspar that exsolved must be re-integrated first.")
+	}
+	if len(s.parts) > 0 {
+		out = append(out, "A re-integrated feldspar gives its composition before it exsolved; alone it gives a minimum temperature. It may be an igneous survivor in a metamorphic rock.")
 	}
 	return out
 }

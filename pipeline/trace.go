@@ -142,9 +142,7 @@ func (s *state) startTrace(it item, row *tables.EstimateRow) *report.Trace {
 		if x < 0 {
 			continue
 		}
-		b, r := s.all.At(int(x))
-		t.Analyses = append(t.Analyses, report.TracedAnalysis{ID: b.Text(tables.AnalysisID, r), Source: b.Source,
-			Line: b.Line(r), Phase: string(b.Phase(r)), Lineage: b.Lineage(r).String()})
+		t.Analyses = append(t.Analyses, s.traced(x)...)
 	}
 	return t
 }

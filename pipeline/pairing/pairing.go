@@ -169,6 +169,10 @@ func memberOf(b *tables.Batch, row int) member {
 		m |= exsolved | host
 	case strings.EqualFold(texture, "lamella") || strings.EqualFold(texture, "lamellae"):
 		m |= exsolved
+	default:
+		if _, part := b.Number(tables.AreaFraction, row); part { // of an exsolved grain, whatever its texture is called
+			m |= exsolved
+		}
 	}
 	return m
 }

@@ -32,7 +32,7 @@ func only(rules ...string) *manifests.Pairing {
 var texts = map[string]tables.Text{"label": tables.PairLabel, "texture": tables.Texture, "domain": tables.Domain,
 	"generation": tables.Generation, "kind": tables.AnalysisKind, "aside": tables.SetAside}
 
-var numbers = map[string]tables.Number{"x": tables.SpotXUm, "y": tables.SpotYUm}
+var numbers = map[string]tables.Number{"area": tables.AreaFraction, "x": tables.SpotXUm, "y": tables.SpotYUm}
 
 var endMembers = map[string]chem.Measurand{"Ab": chem.XAb, "Or": chem.XOr, "An": chem.XAn}
 
@@ -137,6 +137,7 @@ func TestListed(t *testing.T) {
 		{"whole grains", [][]string{{"Opx s 1 kind=Bulk", "Cpx s 1 kind=re-integrated"}}, "1:0-1", nil},
 		{"a host is no feldspar of two", [][]string{{"Afs s 1 texture=host", "Pl s 1"}}, "", []int32{0, 1}},
 		{"a lamella is no feldspar of two", [][]string{{"Afs s 1", "Pl s 1 texture=lamella"}}, "", []int32{0, 1}},
+		{"a part with an area fraction is none", [][]string{{"Afs s 1 area=.4", "Pl s 1"}}, "", []int32{0, 1}},
 		{"a re-integrated feldspar is", [][]string{{"Afs s 1 kind=re-integrated texture=host", "Pl s 1"}}, "0:0-1", nil},
 		{"parts, whole and plagioclase", [][]string{{"Pl s 1 texture=lamella Or=.05 Ab=.95", "Afs s 1 texture=host Or=.9 Ab=.1", "Afs s 1 kind=re-integrated", "Pl s 1"}}, "0:2-3 2:0-1", nil},
 	})

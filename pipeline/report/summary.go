@@ -29,7 +29,8 @@ type Summary struct {
 // Source is one file and what became of its rows.
 type Source struct {
 	ID, File                      string
-	Rows, Kept, Flagged, SetAside int
+	Rows, Kept, Flagged, SetAside int      // as read
+	Reintegrated                  int      // grains put together from its rows
 	Unused                        []string // headers of columns nothing was made of
 }
 
@@ -77,6 +78,9 @@ func (s *Summary) sources(b *strings.Builder) {
 	fmt.Fprintf(b, "\n%-24s %8s %8s %8s %10s\n", "Analyses by source", "in", "kept", "flagged", "set aside")
 	for _, r := range s.Sources {
 		fmt.Fprintf(b, "  %-22s %8d %8d %8d %10d\n", problem.Clean(r.ID), r.Rows, r.Kept, r.Flagged, r.SetAside)
+		if r.Reintegrated > 0 {
+			fmt.Fprintf(b, "  %-22s %8d\n", "  re-integrated grains", r.Reintegrated)
+		}
 	}
 	for _, c := range s.Counts {
 		fmt.Fprintf(b, "%-24s %8d %8d %8d %10d\n", "All "+c.What, c.In, c.Kept, c.Flagged, c.SetAside)

@@ -38,6 +38,7 @@ type TracedAnalysis struct {
 	Line    int    `json:"line"`
 	Phase   string `json:"phase"`
 	Lineage string `json:"lineage"`
+	PartOf  string `json:"part_of,omitempty"` // the re-integrated analysis it is a part of
 	Cells   []Cell `json:"cells"`
 }
 
@@ -70,6 +71,9 @@ func (t *Trace) Text() string {
 	fmt.Fprintf(&b, "%s\n", problem.Clean(t.EstimateID))
 	for _, a := range t.Analyses {
 		fmt.Fprintf(&b, "\n%s (%s): %s line %d, lineage %s\n", problem.Clean(a.ID), a.Phase, problem.Clean(a.File), a.Line, a.Lineage)
+		if a.PartOf != "" {
+			fmt.Fprintf(&b, "  part of %s\n", problem.Clean(a.PartOf))
+		}
 		for _, c := range a.Cells {
 			fmt.Fprintf(&b, "  column %-3d %-24s %-20s %s\n", c.Column, problem.Clean(c.Header), c.Quantity, problem.Quote(c.Text))
 		}

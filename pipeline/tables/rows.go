@@ -9,9 +9,9 @@ import "tieline/thermo/chem"
 
 // AnalysisRow is one analysis: one spot, or one reported mean, on one phase.
 type AnalysisRow struct {
-	AnalysisID        string   `parquet:"analysis_id" doc:"The analysis's name in this compilation: source/label, or source/sample:phase where the source has no labels; #2, #3 ... mark repeats"`
+	AnalysisID        string   `parquet:"analysis_id" doc:"The analysis's name in this compilation: source/label, or source/sample:phase where the source has no labels, or source/grain:re-integrated; #2, #3 ... mark repeats"`
 	Source            string   `parquet:"source" doc:"Id of the source, as the manifest gives it"`
-	SourceLine        int64    `parquet:"source_line" doc:"Line of the source file on which the analysis starts, counted from 1"`
+	SourceLine        int64    `parquet:"source_line" doc:"Line of the source file on which the analysis starts, counted from 1; that of its first part for a re-integrated one"`
 	SourceColumn      *int64   `parquet:"source_column,optional" doc:"Column of the source file, counted from 1, where analyses stand side by side; NULL where a line is one analysis"`
 	Label             string   `parquet:"label,optional" doc:"Label of the analysis as the source gives it; NULL where it has none"`
 	Sample            string   `parquet:"sample" doc:"Sample the analysis belongs to"`
