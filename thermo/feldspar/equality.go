@@ -60,9 +60,12 @@ func (e equality) difference(name, unit string, w []float64) *method.Quantity {
 		return nil
 	}
 	d.Fill = func(b *method.Block, q []float64, _ []method.Reason) {
-		clear(q)
-		for m, p := range parameters {
-			for i, term := range b.Of(d.Needs[m])[:len(q)] {
+		first := b.Of(d.Needs[0])
+		for i := range q {
+			q[i] = float64(parameters[0] * first[i])
+		}
+		for m, p := range parameters[1:] {
+			for i, term := range b.Of(d.Needs[m+1])[:len(q)] {
 				q[i] += float64(p * term)
 			}
 		}
