@@ -127,11 +127,10 @@ func constantsOf(s *manifests.Source) []constant {
 
 // header is one header cell on its way into a plan.
 type header struct {
-	at       int
-	shown    string // trimmed
-	text     string // as headers are compared
-	meaning  meaning
-	declared bool // the manifest maps it
+	at      int
+	shown   string // trimmed
+	text    string // as headers are compared
+	meaning meaning
 }
 
 // newPlan reads the header row; start is the text's. fatal says that no row is
@@ -185,7 +184,7 @@ func (h *headerReader) read(cells []string) []header {
 			continue
 		}
 		if q, ok := declared[one.text]; ok {
-			one.meaning, one.declared = meaning{quantity: q}, true
+			one.meaning = meaning{quantity: q}
 		} else {
 			one.meaning = v.look(cell)
 		}
