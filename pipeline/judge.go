@@ -81,7 +81,7 @@ func (s *state) judgeBlock(surveyed *qc.Surveyed, from, to int) judged {
 		if seen.SetAside == "" {
 			findings = append(findings, qc.OfCoverage(b.Phase(row))...)
 		}
-		findings = append(findings, s.reintegrationFindings(i)...)
+		findings = append(findings, s.reintegrationFindings(surveyed, i)...)
 		v, reasons := qc.Judge(findings)
 		r.verdicts = append(r.verdicts, v)
 		r.reasons = append(r.reasons, reasons)

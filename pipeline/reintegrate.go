@@ -15,10 +15,10 @@ func (s *state) reintegrate() {
 
 // reintegrationFindings are what re-integration says of an analysis. A grain is
 // no better than its parts: what flags or sets aside one of them does so to it.
-func (s *state) reintegrationFindings(i int) []qc.Finding {
+func (s *state) reintegrationFindings(surveyed *qc.Surveyed, i int) []qc.Finding {
 	out := s.ofParts[int32(i)]
 	for _, part := range s.parts[int32(i)] {
-		j := s.judgeBlock(int(part), int(part)+1)
+		j := s.judgeBlock(surveyed, int(part), int(part)+1)
 		if j.verdicts[0] == qc.Kept {
 			continue
 		}
