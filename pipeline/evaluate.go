@@ -195,6 +195,7 @@ func (e *evaluator) evaluate(from, to int) result {
 		lane += len(m.Components)
 	}
 	for i := range to - from {
+		e.together(estimates, i)
 		for l := range estimates {
 			e.emit(&r, from+i, l, &estimates[l][i])
 		}
@@ -248,8 +249,9 @@ type estimate struct {
 	why        method.Reason
 	outOf      []*method.Bound
 	outOfValue []float64
-	status     string  // statusAtMost or statusAtLeast where there is a bound, else ""
-	bound      float64 // degC
+	status     string       // statusAtMost or statusAtLeast where there is a bound, else ""
+	bound      float64      // degC
+	found      []qc.Finding // by rules that look at several estimates of the item
 }
 
 // method evaluates m at P and at P -+ 100 bar, and gives per component the
@@ -441,7 +443,7 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 	row.TC, row.DTDP = &est.c, finite(est.dTdP)
 	in := len(est.outOf) == 0
 	row.InRange, row.OutOfRange = &in, boundNames(est.outOf)
-	findings := qc.OfEstimate(e.s.qcEstimate(e.k, it, l, est, p))
+	findings := append(qc.OfEstimate(e.s.qcEstimate(e.k, it, l, est, p)), est.found...)
 	own, reasons := qc.Judge(findings)
 	v, reasons := qc.Inherit(own, reasons, from, why)
 	row.Status, row.Reason, row.Verdict = statusNumber, reasons, v.String()

@@ -1,6 +1,7 @@
 package pipeline
 
 import (
+	"slices"
 	"strconv"
 	"strings"
 	"unique"
@@ -70,7 +71,7 @@ func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
 			st.published = rowPublished(b, rb)
 		}
 	}
-	findings := qc.OfPair(seen)
+	findings := slices.Concat(s.sides(p, a, ra, b, rb, seen.KD), qc.OfPair(seen))
 	v, reasons := qc.Judge(findings)
 	for _, x := range []int32{p.A, p.B} {
 		bx, rx := s.all.At(int(x))
@@ -99,6 +100,52 @@ func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
 		row.PublishedTC, row.PublishedKind = &st.published.c, st.published.kind
 	}
 	return row, s.findingRows("pair", row.PairID, p.A, findings)
+}
+
+// sides applies the rules on what the two compositions say of each other.
+func (s *state) sides(p pairing.Pair, a *tables.Batch, ra int, b *tables.Batch, rb int, kd *float64) []qc.Finding {
+	limits := &s.manifest.QC
+	switch pairing.Kinds[p.Kind].A {
+	case chem.Afs:
+		afs, pl := fractions(a, ra), fractions(b, rb)
+		if afs == nil || pl == nil {
+			return nil
+		}
+		return qc.FeldsparPair(limits, *afs, *pl)
+	case chem.Opx:
+		var out []qc.Finding
+		if opx, cpx := pyroxene(a, ra), pyroxene(b, rb); opx != nil && cpx != nil {
+			out = qc.PyroxeneSides(opx.Apfu[chem.Ca], cpx.Apfu[chem.Ca])
+		}
+		if kd != nil {
+			out = append(out, qc.Distribution(limits, *kd)...)
+		}
+		return out
+	}
+	return nil
+}
+
+// fractions gives a feldspar's Ab, Or, An; nil where it has none.
+func fractions(b *tables.Batch, row int) *[3]float64 {
+	var c chem.Composition
+	b.Composition(row, &c)
+	ab, or, an, _, why := formula.Feldspar(&c)
+	if why != method.OK {
+		return nil
+	}
+	return &[3]float64{ab, or, an}
+}
+
+// pyroxene gives a pyroxene's formula on 6 O, all Fe2+; nil where there is none
+// or Ca was not looked for.
+func pyroxene(b *tables.Batch, row int) *formula.Formula {
+	var c chem.Composition
+	b.Composition(row, &c)
+	f := formula.Of(&c, method.Basis{Oxygens: 6, Cations: 4, Ferric: method.AllFe2})
+	if f.Why != method.OK || !formula.Determined(&c, chem.Ca) {
+		return nil
+	}
+	return &f
 }
 
 // feMgDistribution is (Fe/Mg)cpx / (Fe/Mg)opx of a pyroxene pair, all iron; nil

@@ -5,7 +5,6 @@ import (
 	"tieline/pipeline/tables"
 	"tieline/qc"
 	"tieline/thermo/chem"
-	"tieline/thermo/formula"
 )
 
 // estimateRow starts the row of one temperature with what it shares with every
@@ -54,26 +53,21 @@ func variantName(v string) string {
 func (s *state) qcEstimate(k *kind, it item, l *discrepancy.Lane, est *estimate, p pressure) *qc.Estimate {
 	b, _ := s.all.At(int(it.a))
 	e := &qc.Estimate{
-		Info: l.Info, Component: l.Component, OutOf: est.outOf, OutOfValue: est.outOfValue,
+		NoPressure: !p.given(),
+		Info:       l.Info, Component: l.Component, OutOf: est.outOf, OutOfValue: est.outOfValue,
 		Assumed: p.source == pFromManifest || p.source == pFromLine, PKbar: p.kbar, Setting: s.settings[b.Source], Beside: true,
 	}
 	if need := l.Info.NeedsBeside; need != "" {
 		e.Beside = s.beside(it.a, need)
 	}
 	if it.pair >= 0 && k.roles[0] == chem.Afs {
-		_, _, an := s.fractions(it.a)
-		_, or, anPl := s.fractions(it.b)
-		e.AnAfs, e.OrPl, e.AnPl = &an, &or, &anPl
+		a, ra := s.all.At(int(it.a))
+		b, rb := s.all.At(int(it.b))
+		if afs, pl := fractions(a, ra), fractions(b, rb); afs != nil && pl != nil {
+			e.AnAfs, e.OrPl, e.AnPl = &afs[2], &pl[1], &pl[2]
+		}
 	}
 	return e
-}
-
-func (s *state) fractions(i int32) (ab, or, an float64) {
-	b, row := s.all.At(int(i))
-	var c chem.Composition
-	b.Composition(row, &c)
-	ab, or, an, _, _ = formula.Feldspar(&c)
-	return ab, or, an
 }
 
 // findingRows makes the qc table's rows of one row's findings; analysis says

@@ -35,7 +35,7 @@ func IgneousDistribution(limits *manifests.QC, kd float64) []Finding {
 // FeldsparPair applies the rules on the two compositions of a feldspar pair,
 // each Ab, Or, An.
 func FeldsparPair(limits *manifests.QC, afs, pl [3]float64) []Finding {
-	var out []Finding
+	out := feldsparSides(afs, pl)
 	if an := pl[2]; an > limits.PlAnFlagged+eps {
 		l := text(limits.PlAnFlagged, 3)
 		out = append(out, Finding{Rule: "I-1 plagioclase", Effect: Flagged, Value: number(an), Limit: "at most " + l,
@@ -47,6 +47,27 @@ func FeldsparPair(limits *manifests.QC, afs, pl [3]float64) []Finding {
 			Detail: fmt.Sprintf("Ab differs by %s and Or by %s between the feldspars, both below %s: close to the critical curve, where small errors move T far", text(ab, 3), text(or, 3), text(limit, 3))})
 	}
 	return out
+}
+
+// feldsparSides sets aside a pair whose alkali feldspar is not the side with more
+// Or and less An: the methods give such a pair a temperature too.
+func feldsparSides(afs, pl [3]float64) []Finding {
+	if afs[1] > pl[1] && afs[2] < pl[2] {
+		return nil
+	}
+	return []Finding{{Rule: "sides exchanged", Effect: SetAside, Value: number(afs[1] - pl[1]), Limit: "more Or and less An in the alkali feldspar",
+		Detail: fmt.Sprintf("the alkali feldspar (Or %s, An %s) is not richer in Or and poorer in An than the plagioclase (Or %s, An %s): labels exchanged, or no such pair",
+			text(afs[1], 3), text(afs[2], 3), text(pl[1], 3), text(pl[2], 3))}}
+}
+
+// PyroxeneSides sets aside a pair whose clinopyroxene does not hold more Ca than
+// its orthopyroxene, apfu on 6 O.
+func PyroxeneSides(opx, cpx float64) []Finding {
+	if cpx > opx {
+		return nil
+	}
+	return []Finding{{Rule: "sides exchanged", Effect: SetAside, Value: number(cpx - opx), Limit: "more Ca in the clinopyroxene",
+		Detail: fmt.Sprintf("Ca of the clinopyroxene (%s) is not above that of the orthopyroxene (%s): labels exchanged, or no such pair", text(cpx, 3), text(opx, 3))}}
 }
 
 // Concordance holds the spread of the temperatures one method gives from Ab, Or

@@ -15,7 +15,8 @@ type Estimate struct {
 	OutOf     []*method.Bound // the bounds it is outside of
 	// OutOfValue holds the variable's value for each of OutOf, in the bound's unit.
 	OutOfValue []float64
-	Assumed    bool     // pressure is the manifest's default
+	NoPressure bool     // none is given; worked at 1 bar
+	Assumed    bool     // pressure is the manifest's default or line
 	PKbar      float64  //
 	Setting    string   // as the source gives it
 	Beside     bool     // the phase Method.NeedsBeside is recorded beside the analysis
@@ -31,14 +32,18 @@ func OfEstimate(e *Estimate) []Finding {
 			Limit:  fmt.Sprintf("%s to %s %s", text(b.Min, 4), text(b.Max, 4), b.Unit),
 			Detail: fmt.Sprintf("%s %s is outside the calibrated %s to %s %s", b.Name, text(e.OutOfValue[i], 4), text(b.Min, 4), text(b.Max, 4), b.Unit)})
 	}
+	if e.NoPressure {
+		out = append(out, Finding{Rule: "no pressure", Effect: Flagged, Limit: "stated by the source",
+			Detail: "no pressure is given: worked at 1 bar, and dT/dP is at most 1 degC/kbar"})
+	}
 	if e.Assumed {
 		out = append(out, Finding{Rule: "assumed pressure", Effect: Flagged, Value: number(e.PKbar), Limit: "stated by the source",
-			Detail: "assumed pressure: " + text(e.PKbar, 3) + " kbar is the manifest's default"})
+			Detail: "assumed pressure: " + text(e.PKbar, 3) + " kbar is the manifest's, not the source's"})
 	}
 	out = append(out, setting(e)...)
 	if need := e.Info.NeedsBeside; need != "" && !e.Beside {
 		out = append(out, Finding{Rule: "assemblage", Effect: Flagged, Limit: string(need) + " beside it",
-			Detail: fmt.Sprintf("no %s is recorded beside it: the temperature is a minimum", need)})
+			Detail: fmt.Sprintf("no %s is recorded beside it: %s", need, e.Info.Assemblage)})
 	}
 	return append(out, weakComponent(e)...)
 }

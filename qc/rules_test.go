@@ -152,6 +152,9 @@ var ruleCases = []ruleCase{
 	{"Fe3+ above total Fe", Noted, one(chem.Cpx, pyroxeneOf(4.02, map[chem.Cation]float64{chem.Fe2: 0.0549})), one(chem.Cpx, pyroxeneOf(4.02, map[chem.Cation]float64{chem.Fe2: 0.0550}))},
 	{"no method", Noted, func(*manifests.Manifest) []Finding { return OfCoverage("Grt") }, func(*manifests.Manifest) []Finding { return OfCoverage(chem.Pl) }},
 
+	{"sides exchanged", SetAside, of(func(*manifests.QC) []Finding { return PyroxeneSides(0.7, 0.7) }), of(func(*manifests.QC) []Finding { return PyroxeneSides(0.05, 0.051) })},
+	{"sides exchanged", SetAside, feldspars([3]float64{0.7, 0.1, 0.2}, [3]float64{0.2, 0.7, 0.1}), feldspars([3]float64{0.2, 0.7, 0.1}, [3]float64{0.7, 0.1, 0.2})},
+	{"sides exchanged", SetAside, feldspars([3]float64{0.2, 0.6, 0.2}, [3]float64{0.7, 0.1, 0.2}), feldspars([3]float64{0.2, 0.6, 0.199}, [3]float64{0.7, 0.1, 0.2})},
 	{"Mg number order", Flagged, pair(Pair{KD: n(1)}), pair(Pair{KD: n(0.999)})},
 	{"pressures differ", Flagged, pair(Pair{PKbar: [2]*float64{n(8), n(8.1)}}), pair(Pair{PKbar: [2]*float64{n(8), n(8)}})},
 	{"published temperatures differ", Flagged, pair(Pair{PublishedC: [2]*float64{n(800), n(801)}}), pair(Pair{PublishedC: [2]*float64{n(800), n(800)}})},
@@ -162,6 +165,7 @@ var ruleCases = []ruleCase{
 	{"close to the critical curve", Flagged, feldspars([3]float64{0.5, 0.3, 0.2}, [3]float64{0.599, 0.201, 0.2}), feldspars([3]float64{0.5, 0.3, 0.2}, [3]float64{0.6, 0.2, 0.2})},
 
 	{"outside calibrated range", Flagged, estimate(Estimate{OutOf: []*method.Bound{{Name: "T", Unit: "degC", Min: 900, Max: 1400}}, OutOfValue: []float64{899}}), estimate(Estimate{})},
+	{"no pressure", Flagged, estimate(Estimate{NoPressure: true}), estimate(Estimate{})},
 	{"assumed pressure", Flagged, estimate(Estimate{Assumed: true, PKbar: 8}), estimate(Estimate{PKbar: 8})},
 	{"setting", Flagged, estimate(Estimate{Info: mantleOnly, Setting: "granulite"}), estimate(Estimate{Info: mantleOnly, Setting: "Mantle peridotite"})},
 	{"assemblage", Flagged, estimate(Estimate{Info: &method.Info{NeedsBeside: chem.Cpx}}), estimate(Estimate{Info: &method.Info{NeedsBeside: chem.Cpx}, Beside: true})},

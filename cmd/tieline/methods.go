@@ -3,6 +3,7 @@ package main
 import (
 	"fmt"
 	"io"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -31,11 +32,10 @@ func methodsCommand() *cobra.Command {
 		RunE: work(func(cmd *cobra.Command, args []string) error {
 			list := thermo.Methods()
 			if len(args) == 1 {
-				m := thermo.ByID(args[0])
-				if m == nil {
+				if thermo.ByID(args[0]) == nil {
 					return fmt.Errorf("no method is called %s; `tieline methods` lists them", problem.Quote(args[0]))
 				}
-				list = []*method.Method{m}
+				list = slices.DeleteFunc(slices.Clone(list), func(m *method.Method) bool { return m.ID != args[0] })
 			}
 			if asJSON {
 				return printJSON(cmd.OutOrStdout(), described(list))
@@ -56,6 +56,7 @@ func methodsCommand() *cobra.Command {
 // description is a method as programs read it.
 type description struct {
 	ID          string          `json:"id"`
+	Variant     string          `json:"variant,omitempty"` // on another iron basis than the calibration's own
 	Standing    method.Standing `json:"standing"`
 	Equation    string          `json:"equation"`
 	Ref         string          `json:"ref"`
@@ -64,6 +65,7 @@ type description struct {
 	Needs       []string        `json:"needs"`
 	Fe3Basis    string          `json:"fe3_basis,omitempty"`
 	Closes      string          `json:"closes"`
+	Assemblage  string          `json:"assemblage,omitempty"`
 	Range       []bound         `json:"range"`
 	RangeSource string          `json:"range_source"`
 	Setting     string          `json:"setting,omitempty"`
@@ -83,8 +85,8 @@ type bound struct {
 func described(list []*method.Method) []description {
 	var out []description
 	for _, m := range list {
-		d := description{ID: m.ID, Standing: m.Standing, Equation: m.Equation, Ref: m.Ref, Components: m.Components,
-			Fe3Basis: m.IronConvention(), Closes: m.Closes, RangeSource: m.Range.Source, Setting: m.Range.Setting,
+		d := description{ID: m.ID, Variant: m.Variant, Standing: m.Standing, Equation: m.Equation, Ref: m.Ref, Components: m.Components,
+			Fe3Basis: m.IronConvention(), Closes: m.Closes, Assemblage: m.Assemblage, RangeSource: m.Range.Source, Setting: m.Range.Setting,
 			SigmaC: m.Sigma.C, SigmaOrigin: m.Sigma.Origin, Shares: m.Shares, DerivedFrom: m.DerivedFrom}
 		for _, p := range m.Phases {
 			d.Phases = append(d.Phases, string(p))
@@ -102,7 +104,11 @@ func described(list []*method.Method) []description {
 
 func printMethod(w io.Writer, m *method.Method) {
 	d := described([]*method.Method{m})[0]
-	fmt.Fprintf(w, "%s  (%s)\n", d.ID, d.Standing)
+	title := d.ID
+	if d.Variant != "" {
+		title += ", variant " + d.Variant
+	}
+	fmt.Fprintf(w, "%s  (%s)\n", title, d.Standing)
 	line := func(what, text string) {
 		if text != "" {
 			fmt.Fprintf(w, "  %-11s %s\n", what, strings.ReplaceAll(text, "\n", "\n"+strings.Repeat(" ", 14)))
@@ -125,7 +131,8 @@ func printMethod(w io.Writer, m *method.Method) {
 	for i, s := range d.SigmaC {
 		sigma = append(sigma, strings.TrimSpace(fmt.Sprintf("%s +- %g degC", m.Components[i], s)))
 	}
-	line("error", strings.Join(sigma, ", ")+" ("+d.SigmaOrigin+")")
+	line("error", strings.TrimSpace(strings.Join(sigma, ", ")+" ("+d.SigmaOrigin+")"))
+	line("assemblage", d.Assemblage)
 	line("derived", strings.Join(d.DerivedFrom, ", "))
 	line("shares", strings.Join(d.Shares, ", "))
 }
