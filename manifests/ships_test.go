@@ -4,6 +4,7 @@ import (
 	"encoding/csv"
 	"fmt"
 	"io"
+	"maps"
 	"math"
 	"os"
 	"path/filepath"
@@ -11,6 +12,11 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+
+	"golang.org/x/text/encoding"
+	"golang.org/x/text/encoding/charmap"
+	"golang.org/x/text/encoding/unicode"
+	"golang.org/x/text/transform"
 
 	"tieline/thermo/chem"
 )
@@ -34,7 +40,11 @@ func rowsOf(t *testing.T, root *os.Root, s *Source) []map[string]string {
 		t.Fatal(err)
 	}
 	defer f.Close()
-	r := csv.NewReader(f)
+	charset := encoding.Encoding(unicode.UTF8)
+	if s.Encoding == "windows-1252" {
+		charset = charmap.Windows1252
+	}
+	r := csv.NewReader(transform.NewReader(f, unicode.BOMOverride(charset.NewDecoder())))
 	r.Comma = s.Comma()
 	header, err := r.Read()
 	if err != nil {
@@ -87,7 +97,7 @@ func near(t *testing.T, what string, got, want, within float64) {
 }
 
 func TestWhatShipsIsThere(t *testing.T) {
-	for folder, rows := range map[string][]int{"demo": {30, 30}, "elkins-grove-1990": {40}, "cms-brackets": {80}} {
+	for folder, rows := range map[string][]int{"demo": {60, 42, 56, 58, 24, 26, 22, 12}, "elkins-grove-1990": {40}, "cms-brackets": {80}} {
 		m, root := shipped(t, folder)
 		if m.Compilation.ID != folder {
 			t.Errorf("%s: the compilation calls itself %s", folder, m.Compilation.ID)
@@ -184,49 +194,93 @@ func TestBrackets(t *testing.T) {
 	}
 }
 
-// The demo's flaws are planted: a run must find one of each, so they must stay.
+// planted is a cell of the demo that holds a flaw, or that one rests on.
+type planted struct {
+	source, id   string            // id as the manifest's comment lists it
+	row          map[string]string // header to cell: which row
+	header, want string
+}
+
+// The demo's flaws are planted: a run must find one of each, so they must stay,
+// and the manifest's comment must list them.
 func TestDemoFlaws(t *testing.T) {
 	m, root := shipped(t, "demo")
-	totals, glass, noMnO := map[string]int{}, 0, 0
-	partners := map[string]int{}
-	for _, row := range rowsOf(t, root, &m.Sources[0]) {
-		totals[row["Sum"]]++
-		if row["Mineral"] == "glass" {
-			glass++
-			continue
-		}
-		if row["MnO wt.%"] == "" {
-			noMnO++
-		}
-		partners[row["Sample no."]+" "+row["Pr"]]++
+	rows := map[string][]map[string]string{}
+	for i := range m.Sources {
+		rows[m.Sources[i].ID] = rowsOf(t, root, &m.Sources[i])
 	}
-	alone := 0
-	for _, n := range partners {
-		if n == 1 {
-			alone++
-		}
+	text, err := os.ReadFile(filepath.Join("demo", FileName))
+	if err != nil {
+		t.Fatal(err)
 	}
-	for what, got := range map[string][2]int{
-		"total 96.80": {totals["96.80"], 1}, "total 97.60": {totals["97.60"], 1}, "glass": {glass, 1},
-		"rows without MnO": {noMnO, 4}, "analyses without partner": {alone, 1}, "pairs": {len(partners) - alone, 14},
+	spot := func(header, text string) map[string]string { return map[string]string{header: text} }
+	for _, p := range []planted{
+		{"maskelow-2024", "PG-25-o2", spot("Spot", "PG-25-o2"), "Mineral", "orthopyroxene"},
+		{"maskelow-2024", "PG-25-o5", spot("Spot", "PG-25-o5"), "CaO wt.%", "<0.30"},
+		{"maskelow-2024", "PG-11-c4", spot("Spot", "PG-11-c4"), "Sum", "96.80"},
+		{"maskelow-2024", "PG-17-o1", spot("Spot", "PG-17-o1"), "MnO wt.%", ""},
+		{"ovarr-2021", "HP-05-o1", spot("Analysis", "HP-05-o1"), "Total", "97.60"},
+		{"ovarr-2021", "HP-21-o6", spot("Pair", "f"), "Analysis", "HP-21-o6"},
+		{"ovarr-2021", "HP-21-g1", spot("Mineral", "glass"), "Analysis", "HP-21-g1"},
+		{"idrane-2025", "QG-9-k3", spot("Spot", "QG-9-k3"), "CaO", "<0.20"},
+		{"idrane-2025", "QG-4/4", spot("Spot", "QG-4-k4"), "Position", "core"},
+		{"idrane-2025", "QG-4/4", spot("Spot", "QG-4-p4"), "Position", "matrix"},
+		{"idrane-2025", "PF-04-*", spot("Spot", "PF-04-k1"), "BaO", "n.a."},
+		{"corrane-2026", "PG-11A-o3c", map[string]string{"Section": "PG-11A", "X (µm)": "0", "Y (µm)": "0"}, "Spot", "PG-11A-o3c"},
+		{"corrane-2026", "PG-11B-c3c", map[string]string{"Section": "PG-11B", "X (µm)": "4", "Y (µm)": "-3"}, "Spot", "PG-11B-c3c"},
+		{"brathen-1987", "PG-31:Aug#2", map[string]string{"Specimen": "PG-31", "Min.": "augite", "Zone": "rim"}, "P", "0.8"},
 	} {
-		if got[0] != got[1] {
-			t.Errorf("pyroxenes, %s: %d, want %d", what, got[0], got[1])
+		one := find(t, rows[p.source], p.row)
+		if one[p.header] != p.want {
+			t.Errorf("%s %v: %s is %q, want %q", p.source, p.row, p.header, one[p.header], p.want)
+		}
+		if !listed(string(text), p.source, p.id) {
+			t.Errorf("the manifest's comment does not list %s/%s", p.source, p.id)
 		}
 	}
-	barium, below, noPressure := 0, 0, map[string]bool{}
-	for _, row := range rowsOf(t, root, &m.Sources[1]) {
-		if row["BaO"] == "n.a." {
-			barium++
-		}
-		if row["Fe2O3(tot)"] == "<0.02" {
-			below++
-		}
-		if row["P / kbar"] == "" {
-			noPressure[row["Unit"]] = true
+	copies(t, rows["maskelow-2024"], rows["corrane-2026"])
+}
+
+// listed says whether a comment names an analysis: a line that begins with the
+// source holds the id's end.
+func listed(text, source, id string) bool {
+	for line := range strings.Lines(text) {
+		if strings.HasPrefix(line, "#") && strings.Contains(line, source) && strings.Contains(line, id) {
+			return true
 		}
 	}
-	if barium != 8 || below == 0 || len(noPressure) != 1 || !noPressure["Oskeldor Syenite"] {
-		t.Errorf("feldspars: BaO n.a. in %d rows, want 8; Fe2O3 below detection in %d, want some; no pressure in %v, want the Oskeldor Syenite alone", barium, below, noPressure)
+	return false
+}
+
+// find gives the one row that holds these cells.
+func find(t *testing.T, rows []map[string]string, cells map[string]string) map[string]string {
+	t.Helper()
+	var found []map[string]string
+	for _, row := range rows {
+		if !slices.ContainsFunc(slices.Collect(maps.Keys(cells)), func(h string) bool { return row[h] != cells[h] }) {
+			found = append(found, row)
+		}
+	}
+	if len(found) != 1 {
+		t.Fatalf("%d rows hold %v, want 1", len(found), cells)
+	}
+	return found[0]
+}
+
+// copies holds what corrane-2026 took over from maskelow-2024 to the original:
+// equal but for one digit of one CaO.
+func copies(t *testing.T, from, to []map[string]string) {
+	t.Helper()
+	for spot, want := range map[string]int{"PG-03-o1": 0, "PG-03-c1": 0, "PG-22-o1": 0, "PG-22-c1": 1} {
+		a, b := find(t, from, map[string]string{"Spot": spot}), find(t, to, map[string]string{"Spot": spot})
+		var differ []string
+		for _, oxide := range []string{"SiO2", "TiO2", "Al2O3", "Cr2O3", "MnO", "MgO", "CaO", "Na2O"} {
+			if a[oxide+" wt.%"] != b[oxide+"(wt%)"] {
+				differ = append(differ, oxide)
+			}
+		}
+		if len(differ) != want || want == 1 && differ[0] != "CaO" {
+			t.Errorf("%s: the copy differs in %v, want %d oxides", spot, differ, want)
+		}
 	}
 }
