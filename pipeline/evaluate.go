@@ -15,8 +15,13 @@ import (
 	"tieline/thermo/method"
 )
 
-// blockRows is how many pairs or analyses one block holds.
-const blockRows = 1024
+// blockRows is how many analyses one block of the formula stage holds, and
+// itemRows how many pairs or analyses one of the evaluation: each of these gives
+// a row per method and component, and several blocks wait for the writer.
+const (
+	blockRows = 1024
+	itemRows  = 256
+)
 
 // roomBar is the pressure a method without a stated one is tried at; the
 // number stands only where it hardly depends on pressure.

@@ -101,11 +101,17 @@ func runInto(m *manifests.Manifest, root *os.Root, dir string, opt Options) (*Re
 	if err != nil {
 		return nil, err
 	}
+	if err := w.end(analysesTable); err != nil {
+		return nil, err
+	}
 	counts = append(counts, count("analyses", v))
 	log.stage("analyses", int64(s.all.Len()))
 
 	v, err = s.judgePairs(w, opt)
 	if err != nil {
+		return nil, err
+	}
+	if err := w.end(pairsTable); err != nil {
 		return nil, err
 	}
 	counts = append(counts, count("pairs", v))
@@ -186,13 +192,13 @@ func (s *state) evaluate(w *writers, opt Options) ([]*kind, verdicts, error) {
 		for i := range evaluators {
 			evaluators[i] = s.newEvaluator(k)
 		}
-		blocks := (len(k.items) + blockRows - 1) / blockRows
+		blocks := (len(k.items) + itemRows - 1) / itemRows
 		err := ordered(blocks, opt.Workers, func(worker, block int) (result, error) {
-			from := block * blockRows
-			return evaluators[worker].evaluate(from, min(from+blockRows, len(k.items))), nil
+			from := block * itemRows
+			return evaluators[worker].evaluate(from, min(from+itemRows, len(k.items))), nil
 		}, func(block int, r result) error {
 			counts.add(r.counts)
-			done += int64(min(blockRows, len(k.items)-block*blockRows))
+			done += int64(min(itemRows, len(k.items)-block*itemRows))
 			opt.Progress("estimates", done, total)
 			s.tally.noNumbers(k.name, r.rows)
 			return errors.Join(w.estimates.Write(r.rows), s.writeFindings(w, r.findings))
@@ -228,48 +234,6 @@ func (s *state) judgePairs(w *writers, opt Options) (verdicts, error) {
 		}
 	}
 	return counts, nil
-}
-
-// writers are the tables of a result, in the order the record lists them.
-type writers struct {
-	analyses      *tables.Writer[tables.AnalysisRow]
-	pairs         *tables.Writer[tables.PairRow]
-	estimates     *tables.Writer[tables.EstimateRow]
-	samples       *tables.Writer[tables.SampleRow]
-	discrepancies *tables.Writer[tables.DiscrepancyRow]
-	qc            *tables.Writer[tables.FindingRow]
-	done          bool
-}
-
-func createWriters(dir string) (*writers, error) {
-	w := &writers{}
-	var errs [6]error
-	w.analyses, errs[0] = tables.Create[tables.AnalysisRow](dir, "analyses")
-	w.pairs, errs[1] = tables.Create[tables.PairRow](dir, "pairs")
-	w.estimates, errs[2] = tables.Create[tables.EstimateRow](dir, "estimates")
-	w.discrepancies, errs[3] = tables.Create[tables.DiscrepancyRow](dir, "discrepancies")
-	w.samples, errs[5] = tables.Create[tables.SampleRow](dir, "samples")
-	w.qc, errs[4] = tables.Create[tables.FindingRow](dir, "qc")
-	return w, errors.Join(errs[:]...)
-}
-
-// finish closes every table and gives what was written.
-func (w *writers) finish() ([]tables.Written, error) {
-	w.done = true
-	var out []tables.Written
-	var errs []error
-	for _, c := range []func() (tables.Written, error){w.analyses.Close, w.pairs.Close, w.estimates.Close, w.samples.Close, w.discrepancies.Close, w.qc.Close} {
-		t, err := c()
-		out, errs = append(out, t), append(errs, err)
-	}
-	return out, errors.Join(errs...)
-}
-
-// close releases the files of a run that ended early; what they hold is abandoned.
-func (w *writers) close() {
-	if !w.done {
-		_, _ = w.finish()
-	}
 }
 
 // discrepancies compares methods over all pairs and over each group.

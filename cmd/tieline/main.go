@@ -8,6 +8,7 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"runtime/debug"
 
 	"github.com/spf13/cobra"
 
@@ -24,7 +25,12 @@ const (
 // stopped is an error of the work itself; every other error is one of usage.
 type stopped struct{ error }
 
-func main() { os.Exit(execute(os.Args[1:], os.Stdout, os.Stderr)) }
+func main() {
+	// A large compilation is mostly analyses, which stay; collecting at half as
+	// much again instead of twice as much keeps a million of them under 1.5 GiB.
+	debug.SetGCPercent(50)
+	os.Exit(execute(os.Args[1:], os.Stdout, os.Stderr))
+}
 
 // execute runs one command line. People read stderr, programs read stdout.
 func execute(args []string, stdout, stderr io.Writer) int {
