@@ -27,7 +27,9 @@ func CheckInputs(path string) (*Check, error) {
 	c := &Check{Title: m.Compilation.Title, Pairs: map[string]int{}}
 	methods, _ := chosen(m)
 	for _, me := range methods {
-		c.Methods = append(c.Methods, me.ID)
+		if me.Variant == "" {
+			c.Methods = append(c.Methods, me.ID)
+		}
 	}
 	s, sources, err := read(m, root, Options{Progress: func(string, int64, int64) {}})
 	c.Sources = sources

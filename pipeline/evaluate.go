@@ -502,6 +502,9 @@ func (s *state) parentVerdict(it item) (qc.Verdict, string) {
 	if it.pair >= 0 {
 		return s.pair[it.pair].verdict, s.pair[it.pair].reasons
 	}
+	if s.doubted[it.a] {
+		return qc.SetAsideRow, s.reasons[it.a]
+	}
 	return s.verdicts[it.a], s.reasons[it.a]
 }
 

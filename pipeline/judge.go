@@ -1,6 +1,7 @@
 package pipeline
 
 import (
+	"slices"
 	"strconv"
 	"strings"
 	"unique"
@@ -18,6 +19,7 @@ type judged struct {
 	findings []tables.FindingRow
 	verdicts []qc.Verdict
 	reasons  []string
+	doubted  []bool // whether the composition contradicts the phase
 }
 
 // judgeAnalyses works out the formulae, applies the rules for analyses and for
@@ -40,6 +42,9 @@ func (s *state) judgeAnalyses(opt Options, write func(judged) error) (verdicts, 
 			counts[v]++
 			if v != qc.Kept {
 				s.reasons[int32(len(s.verdicts))] = unique.Make(r.reasons[i]).Value() // many rows have the same
+			}
+			if r.doubted[i] {
+				s.doubted[int32(len(s.verdicts))] = true
 			}
 			s.verdicts = append(s.verdicts, v)
 		}
@@ -85,6 +90,7 @@ func (s *state) judgeBlock(surveyed *qc.Surveyed, from, to int) judged {
 		v, reasons := qc.Judge(findings)
 		r.verdicts = append(r.verdicts, v)
 		r.reasons = append(r.reasons, reasons)
+		r.doubted = append(r.doubted, slices.ContainsFunc(findings, func(f qc.Finding) bool { return f.Rule == qc.PhaseIdentity }))
 		out := s.analysisRow(b, row, &c, &w)
 		out.Verdict, out.Reasons = v.String(), reasons
 		r.rows = append(r.rows, out)

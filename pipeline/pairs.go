@@ -71,7 +71,7 @@ func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
 			st.published = rowPublished(b, rb)
 		}
 	}
-	findings := slices.Concat(s.sides(p, a, ra, b, rb, seen.KD), qc.OfPair(seen))
+	findings := slices.Concat(qc.InDoubt(string(a.Phase(ra)), s.doubted[p.A]), qc.InDoubt(string(b.Phase(rb)), s.doubted[p.B]), s.sides(p, a, ra, b, rb, seen.KD), qc.OfPair(seen))
 	v, reasons := qc.Judge(findings)
 	for _, x := range []int32{p.A, p.B} {
 		bx, rx := s.all.At(int(x))

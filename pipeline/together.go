@@ -25,7 +25,9 @@ func (e *evaluator) together(estimates [][]estimate, i int) {
 					ts[c] = &mine[c][i].c
 				}
 			}
-			found(mine, i, qc.Concordance(limits, ts))
+			var sigma [3]float64
+			copy(sigma[:], m.Sigma.C)
+			found(mine, i, qc.Concordance(limits, ts, sigma))
 		}
 		if at := slices.IndexFunc(m.Range.Bounds, func(b method.Bound) bool { return b.Name == igneousBound }); at >= 0 {
 			kd := m.Range.Bounds[at].Quantity

@@ -71,29 +71,43 @@ func PyroxeneSides(opx, cpx float64) []Finding {
 }
 
 // Concordance holds the spread of the temperatures one method gives from Ab, Or
-// and An of one pair against the limit, degC. Absent ones are nil; those set
-// aside on their own are not passed. The finding goes to each of them.
-func Concordance(limits *manifests.QC, ts [3]*float64) []Finding {
-	n, low, high := 0, 0.0, 0.0
-	for _, t := range ts {
+// and An of one pair against the limit, or against twice the combined 1-sigma of
+// the two components furthest apart where that is more, degC. Absent ones are
+// nil. The finding goes to each of them.
+func Concordance(limits *manifests.QC, ts [3]*float64, sigma [3]float64) []Finding {
+	low, high := -1, -1
+	for c, t := range ts {
 		if t == nil {
 			continue
 		}
-		if n == 0 || *t < low {
-			low = *t
+		if low < 0 || *t < *ts[low] {
+			low = c
 		}
-		if n == 0 || *t > high {
-			high = *t
+		if high < 0 || *t > *ts[high] {
+			high = c
 		}
-		n++
 	}
-	spread := high - low
-	if spread <= limits.ConcordanceC+eps {
+	if low < 0 {
 		return nil
 	}
-	return []Finding{{Rule: "concordance", Effect: Flagged, Value: number(spread), Limit: text(limits.ConcordanceC, 1) + " degC",
+	spread := *ts[high] - *ts[low]
+	limit := math.Max(limits.ConcordanceC, 2*math.Sqrt(float64(sigma[low]*sigma[low])+float64(sigma[high]*sigma[high])))
+	if spread <= limit+eps {
+		return nil
+	}
+	return []Finding{{Rule: "concordance", Effect: Flagged, Value: number(spread), Limit: text(limit, 0) + " degC",
 		Detail: fmt.Sprintf("the components' temperatures spread over %s degC, from %s to %s, beyond %s: not in equilibrium, reset on cooling, or at another pressure",
-			text(spread, 0), text(low, 0), text(high, 0), text(limits.ConcordanceC, 1))}}
+			text(spread, 0), text(*ts[low], 0), text(*ts[high], 0), text(limit, 0))}}
+}
+
+// InDoubt sets aside a pair, or the temperatures of one analysis, whose phase the
+// composition contradicts. The analysis itself is flagged and never renamed.
+func InDoubt(phase string, doubted bool) []Finding {
+	if !doubted {
+		return nil
+	}
+	return []Finding{{Rule: "phase in doubt", Effect: SetAside, Limit: "a composition of the mineral named",
+		Detail: "the composition of the " + phase + " contradicts its name"}}
 }
 
 // Reset holds the temperature of Ca exchange against that of Fe-Mg exchange of

@@ -10,6 +10,10 @@ import (
 	"tieline/thermo/method"
 )
 
+// PhaseIdentity is the rule whose finding says that a composition contradicts
+// the phase it goes by.
+const PhaseIdentity = "phase identity"
+
 // What no feldspar and no pyroxene has (common practice, no source). Quartz has
 // Si 4 on 8 O, nepheline a sum of 6; olivine has Si 1.5 and a sum of 4.5 on 6 O,
 // tremolite Si 2.09 and a sum of 3.91, hornblende more K than any crustal
@@ -44,7 +48,7 @@ func identity(limits *manifests.QC, a *Analysis) []Finding {
 }
 
 func doubt(a *Analysis, e Effect, v float64, limit, what, looks string) []Finding {
-	return []Finding{{Rule: "phase identity", Effect: e, Value: number(v), Limit: limit,
+	return []Finding{{Rule: PhaseIdentity, Effect: e, Value: number(v), Limit: limit,
 		Detail: fmt.Sprintf("listed as %s, and %s is %s (%s): %s; the name was left as it is", a.Phase, what, text(v, 3), limit, looks)}}
 }
 

@@ -43,6 +43,7 @@ var Rules = []Rule{
 	{"FeO given as Fe", "source", "totals and cation sums of pyroxenes with iron taken for the metal", []string{"column_rows"}, "0.5 wt% and 0.01 apfu closer", practice},
 	{"ppm given as wt%", "source", "traces that push totals beyond the flagged limit", []string{"column_rows"}, "3 wt%", practice},
 	{"shared stage origin", "source", "thin sections of one sample whose stage coordinates lie over one another", nil, "one thin section", "by definition"},
+	{"phase in doubt", "pair", "a member flagged by phase identity", nil, "a composition of the mineral named", practice},
 	{"sides exchanged", "pair", "Ca of the pyroxenes, Or and An of the feldspars: which side holds more", nil, "Ca in Cpx above Opx; Or in Afs above Pl, An below", "by definition"},
 	{"Mg number order", "pair", "(Fe/Mg)cpx / (Fe/Mg)opx against 1", nil, "below 1", practice},
 	{"pressures differ", "pair", "pressures of the two rows", nil, "equal", "by definition"},

@@ -152,6 +152,7 @@ var ruleCases = []ruleCase{
 	{"Fe3+ above total Fe", Noted, one(chem.Cpx, pyroxeneOf(4.02, map[chem.Cation]float64{chem.Fe2: 0.0549})), one(chem.Cpx, pyroxeneOf(4.02, map[chem.Cation]float64{chem.Fe2: 0.0550}))},
 	{"no method", Noted, func(*manifests.Manifest) []Finding { return OfCoverage("Grt") }, func(*manifests.Manifest) []Finding { return OfCoverage(chem.Pl) }},
 
+	{"phase in doubt", SetAside, of(func(*manifests.QC) []Finding { return InDoubt("Opx", true) }), of(func(*manifests.QC) []Finding { return InDoubt("Opx", false) })},
 	{"sides exchanged", SetAside, of(func(*manifests.QC) []Finding { return PyroxeneSides(0.7, 0.7) }), of(func(*manifests.QC) []Finding { return PyroxeneSides(0.05, 0.051) })},
 	{"sides exchanged", SetAside, feldspars([3]float64{0.7, 0.1, 0.2}, [3]float64{0.2, 0.7, 0.1}), feldspars([3]float64{0.2, 0.7, 0.1}, [3]float64{0.7, 0.1, 0.2})},
 	{"sides exchanged", SetAside, feldspars([3]float64{0.2, 0.6, 0.2}, [3]float64{0.7, 0.1, 0.2}), feldspars([3]float64{0.2, 0.6, 0.199}, [3]float64{0.7, 0.1, 0.2})},
@@ -173,8 +174,16 @@ var ruleCases = []ruleCase{
 	{"weak component", Flagged, estimate(Estimate{Component: "Or", OrPl: n(0.0099)}), estimate(Estimate{Component: "Or", OrPl: n(0.01)})},
 	{"weak component", Flagged, estimate(Estimate{Component: "Ab", AnPl: n(0.501)}), estimate(Estimate{Component: "Ab", AnPl: n(0.5)})},
 	{"igneous Fe-Mg distribution", SetAside, of(func(q *manifests.QC) []Finding { return IgneousDistribution(q, 0.949) }), of(func(q *manifests.QC) []Finding { return IgneousDistribution(q, 0.95) })},
-	{"concordance", Flagged, of(func(q *manifests.QC) []Finding { return Concordance(q, [3]*float64{n(700), n(750), n(791)}) }),
-		of(func(q *manifests.QC) []Finding { return Concordance(q, [3]*float64{n(700), nil, n(790)}) })},
+	{"concordance", Flagged, of(func(q *manifests.QC) []Finding {
+		return Concordance(q, [3]*float64{n(700), n(750), n(791)}, [3]float64{})
+	}),
+		of(func(q *manifests.QC) []Finding { return Concordance(q, [3]*float64{n(700), nil, n(790)}, [3]float64{}) })},
+	// 2 sqrt(30^2 + 40^2) = 100
+	{"concordance", Flagged, of(func(q *manifests.QC) []Finding {
+		return Concordance(q, [3]*float64{n(700), n(750), n(801)}, [3]float64{30, 90, 40})
+	}), of(func(q *manifests.QC) []Finding {
+		return Concordance(q, [3]*float64{n(700), n(750), n(800)}, [3]float64{30, 90, 40})
+	})},
 	// sqrt(30^2 + 40^2) = 50, twice 100
 	{"possible resetting", Flagged, of(func(q *manifests.QC) []Finding { return Reset(q, 901, 30, 800, 40) }), of(func(q *manifests.QC) []Finding { return Reset(q, 900, 30, 800, 40) })},
 	{"possible resetting", Flagged, of(func(q *manifests.QC) []Finding { return Reset(q, 699, 30, 800, 40) }), of(func(q *manifests.QC) []Finding { return Reset(q, 700, 30, 800, 40) })},
