@@ -27,7 +27,7 @@ type judged struct {
 // sources, then block by block in order.
 func (s *state) judgeAnalyses(opt Options, write func(judged) error) (verdicts, error) {
 	n := s.all.Len()
-	s.verdicts = make([]qc.Verdict, 0, n)
+	s.verdicts, s.reasons = make([]qc.Verdict, 0, n), make([]string, 0, n)
 	var counts verdicts
 	surveyed := qc.Survey(s.manifest, s.all)
 	if err := write(judged{findings: sourceFindings(surveyed)}); err != nil {
@@ -40,9 +40,7 @@ func (s *state) judgeAnalyses(opt Options, write func(judged) error) (verdicts, 
 	}, func(block int, r judged) error {
 		for i, v := range r.verdicts {
 			counts[v]++
-			if v != qc.Kept {
-				s.reasons[int32(len(s.verdicts))] = unique.Make(r.reasons[i]).Value() // many rows have the same
-			}
+			s.reasons = append(s.reasons, unique.Make(r.reasons[i]).Value()) // many rows have the same
 			if r.doubted[i] {
 				s.doubted[int32(len(s.verdicts))] = true
 			}

@@ -36,7 +36,7 @@ type state struct {
 	parts    map[int32][]int32      // of re-integrated analyses
 	ofParts  map[int32][]qc.Finding // what re-integration says of an analysis
 	verdicts []qc.Verdict           // per analysis
-	reasons  map[int32]string       // of analyses not kept
+	reasons  []string               // per analysis, "" where it is kept
 	doubted  map[int32]bool         // analyses whose composition contradicts their phase
 
 	pairs     []pairing.Pair
@@ -78,7 +78,7 @@ type published struct {
 }
 
 func newState(m *manifests.Manifest, methods []*method.Method) *state {
-	s := &state{manifest: m, methods: methods, digests: map[*method.Info]lineage.Digest{}, settings: map[string]string{}, reasons: map[int32]string{}, doubted: map[int32]bool{}, tally: newTally()}
+	s := &state{manifest: m, methods: methods, digests: map[*method.Info]lineage.Digest{}, settings: map[string]string{}, doubted: map[int32]bool{}, tally: newTally()}
 	for _, me := range methods {
 		s.digests[&me.Info] = lineage.Method(me)
 	}

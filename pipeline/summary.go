@@ -99,7 +99,7 @@ func (s *state) listSetAside(out *report.Summary) {
 			continue
 		}
 		b, row := s.all.At(i)
-		out.SetAside = append(out.SetAside, report.Row{ID: b.Text(tables.AnalysisID, row), Why: s.reasons[int32(i)]})
+		out.SetAside = append(out.SetAside, report.Row{ID: b.Text(tables.AnalysisID, row), Why: s.reasons[i]})
 	}
 }
 

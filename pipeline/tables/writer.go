@@ -25,7 +25,7 @@ import (
 // size, whatever batches they come in, and it looks at the page size after each.
 const (
 	batchRows    = 1024
-	rowGroupRows = 128 * 1024
+	rowGroupRows = 32 * 1024
 	pageBytes    = 256 * 1024
 )
 
