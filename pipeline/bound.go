@@ -1,6 +1,8 @@
 package pipeline
 
 import (
+	"math"
+
 	"tieline/thermo/chem"
 	"tieline/thermo/formula"
 	"tieline/thermo/method"
@@ -21,25 +23,63 @@ func (e *evaluator) bound(m *method.Method, c, i int, est *estimate) {
 				continue
 			}
 			limit := d.composition.Value[x]
-			at, ok := e.with(m, c, it, d, x, limit)
-			below, ok2 := e.with(m, c, it, d, x, limit/2)
+			status, at := e.boundAt(m, c, it, d, x, limit)
 			d.composition.State[x], d.composition.Value[x] = chem.BelowDetection, limit
 			d.reader.Reset(&d.composition)
-			if !ok || !ok2 {
-				continue
+			if status != "" {
+				est.bound, est.status = at, status
+				return
 			}
-			est.bound, est.status = at, statusAtLeast
-			if below < at {
-				est.status = statusAtMost
-			}
-			return
 		}
 	}
 }
 
+// smaller are the shares of the limit that show on which side smaller amounts
+// lie: all of them, for some equations turn.
+var smaller = []float64{0.5, 0.1, 0.01, 0.001}
+
+// boundAt gives the temperature at the limit and on which side of it smaller
+// amounts lie; status is "" where there is no number, where they lie on both
+// sides, or where no pressure is given and the temperature depends on it.
+func (e *evaluator) boundAt(m *method.Method, c int, it item, d *side, x chem.Measurand, limit float64) (status string, at float64) {
+	p := e.s.itemPressure(it)
+	if p.source == pFromLine {
+		return "", 0
+	}
+	bar := roomBar
+	if p.given() {
+		bar = chem.Kbar(p.kbar).Bar()
+	}
+	at, ok := e.with(m, c, d, x, limit, bar)
+	if !ok {
+		return "", 0
+	}
+	if !p.given() {
+		above, ok := e.with(m, c, d, x, limit, bar+2*pressureStep)
+		if !ok || math.Abs(above-at) > needsPressureAbove*float64((2*pressureStep).Kbar()) {
+			return "", 0
+		}
+	}
+	for _, share := range smaller {
+		below, ok := e.with(m, c, d, x, float64(limit*share), bar)
+		if !ok {
+			continue
+		}
+		side := statusAtLeast
+		if below < at {
+			side = statusAtMost
+		}
+		if status != "" && side != status {
+			return "", 0
+		}
+		status = side
+	}
+	return status, at
+}
+
 // with evaluates one component for one item with an amount put in for what is
 // below detection, degC.
-func (e *evaluator) with(m *method.Method, c int, it item, d *side, x chem.Measurand, amount float64) (float64, bool) {
+func (e *evaluator) with(m *method.Method, c int, d *side, x chem.Measurand, amount float64, bar chem.Bar) (float64, bool) {
 	d.composition.State[x], d.composition.Value[x] = chem.Measured, amount
 	d.reader.Reset(&d.composition)
 	e.alone.Reset(1)
@@ -47,12 +87,7 @@ func (e *evaluator) with(m *method.Method, c int, it item, d *side, x chem.Measu
 		v, why := e.alone.Set(q)
 		v[0], why[0] = e.sideOf(q).reader.Leaf(q.Leaf)
 	}
-	e.alone.P[0] = roomBar
-	if p := e.s.itemPressure(it); p.source == pFromLine {
-		return 0, false
-	} else if p.given() {
-		e.alone.P[0] = chem.Kbar(p.kbar).Bar()
-	}
+	e.alone.P[0] = bar
 	lanes := method.NewLanes(m, 1)
 	m.Evaluate(e.alone, lanes)
 	return float64(lanes[c].T[0].Celsius()), lanes[c].Why[0] == method.OK

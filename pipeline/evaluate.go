@@ -60,6 +60,7 @@ type kind struct {
 	// outside marks, per lane and item, a number that stays out of the samples
 	// table: set aside, or out of range in composition.
 	outside [][]bool
+	inRange []int64 // per lane of a method
 }
 
 // publishedKinds are what a published temperature may be; each has a lane of
@@ -133,6 +134,7 @@ func (k *kind) prepare(methods []*method.Method) {
 		k.lanes[i].T = slices.Repeat([]float64{math.NaN()}, len(k.items))
 		k.outside = append(k.outside, make([]bool, len(k.items)))
 	}
+	k.inRange = make([]int64, k.laneCount())
 	k.leaves = method.Leaves(needs)
 }
 
@@ -165,6 +167,7 @@ type result struct {
 	rows     []tables.EstimateRow
 	findings []tables.FindingRow
 	counts   verdicts
+	inRange  []int64 // per lane of a method
 }
 
 // verdicts counts rows by verdict.
@@ -183,7 +186,7 @@ func (s *state) newEvaluator(k *kind) *evaluator {
 // evaluate works out items [from, to) of the kind: estimates, findings, and the
 // lanes' temperatures for the discrepancies.
 func (e *evaluator) evaluate(from, to int) result {
-	var r result
+	r := result{inRange: make([]int64, e.k.laneCount())}
 	e.from = from
 	e.fill(from, to)
 	lane := 0
@@ -294,35 +297,45 @@ func (e *evaluator) around(m *method.Method) {
 	e.shift(-pressureStep)
 }
 
-// lineRounds and lineTolerance end the search for the pressure on a line: the
-// step is contracting for any crustal or mantle gradient, by a factor of slope
-// times dT/dP, some 0.3 at most.
+// lineRounds and lineTolerance end the search for the pressure on a line. Most
+// methods are straight lines in pressure, where two secant steps arrive.
 const (
-	lineRounds             = 200
+	lineRounds             = 60
 	lineTolerance chem.Bar = 1e-6
 )
 
 // followLine puts each row that lies on the manifest's line P(T) at the
-// pressure where component c of m meets the line. A row whose temperature and
-// line do not meet keeps the last pressure tried, and estimate finds it off the
-// line.
+// pressure where component c of m meets the line: the root of line(T(P)) - P by
+// the secant method. A row that does not arrive keeps the last pressure tried,
+// and estimate finds it off the line.
 func (e *evaluator) followLine(m *method.Method, c int) {
 	line := &e.s.manifest.Pressure
+	n := len(e.p)
+	lastP, lastG := make([]chem.Bar, n), make([]chem.Bar, n)
 	for i, p := range e.p {
 		if p.source == pFromLine {
 			e.block.P[i] = chem.Kbar(line.LineAt(lineStartC)).Bar()
 		}
 	}
-	for range lineRounds {
+	for round := range lineRounds {
 		m.Evaluate(e.block, e.at[0])
 		moved := false
 		for i, p := range e.p {
 			if p.source != pFromLine || e.at[0][c].Why[i] != method.OK {
 				continue
 			}
-			next := chem.Kbar(line.LineAt(float64(e.at[0][c].T[i].Celsius()))).Bar()
-			moved = moved || next-e.block.P[i] > lineTolerance || e.block.P[i]-next > lineTolerance
-			e.block.P[i] = next
+			at := e.block.P[i]
+			g := chem.Kbar(line.LineAt(float64(e.at[0][c].T[i].Celsius()))).Bar() - at
+			if g <= lineTolerance && g >= -lineTolerance {
+				continue
+			}
+			step := g
+			if round > 0 && g != lastG[i] {
+				step = chem.Bar(float64(-g * (at - lastP[i]) / (g - lastG[i])))
+			}
+			lastP[i], lastG[i] = at, g
+			e.block.P[i] = at + step
+			moved = true
 		}
 		if !moved {
 			return
@@ -346,7 +359,7 @@ func (e *evaluator) estimate(m *method.Method, c, i int) estimate {
 		est.why = method.NotFinite
 	}
 	if e.p[i].source == pFromLine && est.why == method.OK {
-		if off := est.kbar - e.s.manifest.Pressure.LineAt(est.c); !(math.Abs(off) < 1e-6) {
+		if off := est.kbar - e.s.manifest.Pressure.LineAt(est.c); !(math.Abs(off) < 1e-6) || est.kbar < 0 {
 			est.why = method.OffTheLine
 		}
 	}
@@ -439,6 +452,12 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 		row.Status, row.Reason = statusNoNumber, est.why.String()
 		if est.status != "" {
 			row.Status, row.BoundC = est.status, &est.bound
+			findings := qc.OfBound(e.s.qcEstimate(e.k, it, l, est, p))
+			_, reasons := qc.Judge(findings)
+			if reasons != "" {
+				row.Reason += "; " + reasons
+			}
+			r.findings = append(r.findings, e.s.findingRows("estimate", row.EstimateID, it.a, findings)...)
 		}
 		row.Verdict = qc.SetAsideRow.String()
 		r.counts[qc.SetAsideRow]++
@@ -446,7 +465,13 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 		return
 	}
 	row.TC, row.DTDP = &est.c, finite(est.dTdP)
+	if sigma := sigmaOf(e.k, lane); sigma > 0 {
+		row.SigmaCalC = &sigma
+	}
 	in := len(est.outOf) == 0
+	if in {
+		r.inRange[lane]++
+	}
 	row.InRange, row.OutOfRange = &in, boundNames(est.outOf)
 	findings := append(qc.OfEstimate(e.s.qcEstimate(e.k, it, l, est, p)), est.found...)
 	own, reasons := qc.Judge(findings)
@@ -458,7 +483,8 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 	if v != qc.SetAsideRow {
 		l.T[i] = est.c
 	}
-	e.k.outside[lane][i] = v == qc.SetAsideRow || slices.ContainsFunc(est.outOf, func(b *method.Bound) bool { return b.Composition })
+	e.k.outside[lane][i] = v == qc.SetAsideRow || slices.ContainsFunc(est.outOf, func(b *method.Bound) bool { return b.Composition }) ||
+		slices.ContainsFunc(findings, func(f qc.Finding) bool { return f.Rule == qc.Assemblage })
 }
 
 // emitPublished makes the row of the published temperature, if there is one.

@@ -48,7 +48,7 @@ func (s *state) makePair(i int) (tables.PairRow, []tables.FindingRow) {
 			s.firstPair[x] = int32(i)
 		}
 	}
-	seen := &qc.Pair{KD: feMgDistribution(p.Kind, a, ra, b, rb)}
+	seen := &qc.Pair{KD: feMgDistribution(p.Kind, a, ra, b, rb), Texture: [2]string{a.Text(tables.Texture, ra), b.Text(tables.Texture, rb)}}
 	for j, side := range []struct {
 		b   *tables.Batch
 		row int

@@ -53,8 +53,8 @@ func variantName(v string) string {
 func (s *state) qcEstimate(k *kind, it item, l *discrepancy.Lane, est *estimate, p pressure) *qc.Estimate {
 	b, _ := s.all.At(int(it.a))
 	e := &qc.Estimate{
-		NoPressure: !p.given(),
-		Info:       l.Info, Component: l.Component, OutOf: est.outOf, OutOfValue: est.outOfValue,
+		C: est.c, NoPressure: !p.given() && est.dTdP != 0,
+		Info: l.Info, Component: l.Component, OutOf: est.outOf, OutOfValue: est.outOfValue,
 		Assumed: p.source == pFromManifest || p.source == pFromLine, PKbar: p.kbar, Setting: s.settings[b.Source], Beside: true,
 	}
 	if need := l.Info.NeedsBeside; need != "" {

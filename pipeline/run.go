@@ -124,11 +124,14 @@ func runInto(m *manifests.Manifest, root *os.Root, dir string, opt Options) (*Re
 	counts = append(counts, count("estimates", v))
 	log.stage("estimates", v[0]+v[1]+v[2])
 
-	samples := s.samples(kinds)
-	if err := w.samples.Write(samples); err != nil {
+	if err := w.end(estimatesTable); err != nil {
 		return nil, err
 	}
-	log.stage("samples", int64(len(samples)))
+	units, err := s.samples(kinds, w.samples.Write)
+	if err != nil {
+		return nil, err
+	}
+	log.stage("samples", int64(len(units)))
 
 	found := s.discrepancies(kinds)
 	if err := w.discrepancies.Write(found); err != nil {
@@ -150,7 +153,7 @@ func runInto(m *manifests.Manifest, root *os.Root, dir string, opt Options) (*Re
 		return nil, err
 	}
 	log.stage("record", 1)
-	return &Result{Record: r, Summary: s.summary(sources, counts, kinds, found)}, logFile.Close()
+	return &Result{Record: r, Summary: s.summary(sources, counts, kinds, units, found)}, logFile.Close()
 }
 
 // read takes the sources in and checks what the manifest asks for.
@@ -200,6 +203,9 @@ func (s *state) evaluate(w *writers, opt Options) ([]*kind, verdicts, error) {
 			counts.add(r.counts)
 			done += int64(min(itemRows, len(k.items)-block*itemRows))
 			opt.Progress("estimates", done, total)
+			for l, n := range r.inRange {
+				k.inRange[l] += n
+			}
 			s.tally.noNumbers(k.name, r.rows)
 			return errors.Join(w.estimates.Write(r.rows), s.writeFindings(w, r.findings))
 		})

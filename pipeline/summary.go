@@ -4,12 +4,13 @@ import (
 	"cmp"
 	"math"
 	"slices"
+	"strings"
 
 	"tieline/ingest"
-	"tieline/pipeline/discrepancy"
 	"tieline/pipeline/report"
 	"tieline/pipeline/tables"
 	"tieline/qc"
+	"tieline/thermo/method"
 )
 
 // listedSetAside is how many analyses set aside the summary lists.
@@ -61,7 +62,7 @@ func (t *tally) noNumbers(kind string, rows []tables.EstimateRow) {
 }
 
 // summary gathers what the run says when it ends.
-func (s *state) summary(sources []ingest.Source, counts []Count, kinds []*kind, found []tables.DiscrepancyRow) *report.Summary {
+func (s *state) summary(sources []ingest.Source, counts []Count, kinds []*kind, ofUnits []tables.SampleRow, found []tables.DiscrepancyRow) *report.Summary {
 	out := &report.Summary{Title: s.manifest.Compilation.Title, Cautions: s.cautions(kinds)}
 	out.Sources = s.sourceCounts(sources)
 	for _, c := range counts {
@@ -70,6 +71,7 @@ func (s *state) summary(sources []ingest.Source, counts []Count, kinds []*kind, 
 	for _, k := range kinds {
 		out.Temperatures = append(out.Temperatures, temperatures(k)...)
 	}
+	out.Units = units(ofUnits)
 	for _, d := range found {
 		if d.GroupBy == "all" && d.Variant == variant {
 			out.Discrepancies = append(out.Discrepancies, d)
@@ -139,6 +141,44 @@ func (s *state) sourceCounts(sources []ingest.Source) []report.Source {
 	return out
 }
 
+// units puts the unit level of the samples table into a line per unit, texture
+// and pair kind. Recalled methods, twins and published temperatures stay out.
+func units(samples []tables.SampleRow) []report.Unit {
+	type key struct{ unit, texture, kind string }
+	at := map[key]int{}
+	var out []report.Unit
+	for i := range samples {
+		r := &samples[i]
+		if r.MedianC == nil || r.Variant != variant || r.Standing == "" || r.Standing == string(method.Recalled) {
+			continue
+		}
+		k := key{r.Unit, r.Texture, r.PairKind}
+		name := strings.TrimPrefix(r.Method, r.PairKind+"/")
+		if r.Component != "" {
+			name += " " + r.Component
+		}
+		j, ok := at[k]
+		if !ok {
+			j = len(out)
+			at[k] = j
+			out = append(out, report.Unit{Unit: r.Unit, Texture: r.Texture, PairKind: r.PairKind, Lowest: *r.MedianC, Highest: *r.MedianC, LowestMethod: name, HighestMethod: name})
+		}
+		u := &out[j]
+		u.Methods++
+		u.Samples = max(u.Samples, r.NSamples)
+		if *r.MedianC < u.Lowest {
+			u.Lowest, u.LowestMethod = *r.MedianC, name
+		}
+		if *r.MedianC > u.Highest {
+			u.Highest, u.HighestMethod = *r.MedianC, name
+		}
+	}
+	slices.SortStableFunc(out, func(a, b report.Unit) int {
+		return cmp.Or(cmp.Compare(a.Unit, b.Unit), cmp.Compare(a.Texture, b.Texture))
+	})
+	return out
+}
+
 func temperatures(k *kind) []report.Temperature {
 	var out []report.Temperature
 	if len(k.items) == 0 {
@@ -156,10 +196,10 @@ func temperatures(k *kind) []report.Temperature {
 		}
 		t := report.Temperature{PairKind: k.name, Method: l.Method, Component: l.Component, PublishedKind: l.PublishedKind, Variant: l.Variant, N: len(have)}
 		if len(have) > 0 {
-			t.Low, t.Median, t.High = slices.Min(have), discrepancy.Median(have), slices.Max(have)
+			t.Low, t.High = slices.Min(have), slices.Max(have)
 		}
 		if l.Info != nil {
-			t.SigmaC = sigmaOf(k, i)
+			t.SigmaC, t.Recalled, t.InRange = sigmaOf(k, i), l.Info.Standing == method.Recalled, k.inRange[i]
 		}
 		out = append(out, t)
 	}

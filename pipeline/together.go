@@ -43,7 +43,8 @@ func (e *evaluator) together(estimates [][]estimate, i int) {
 const igneousBound = "KD Fe-Mg"
 
 // reset holds every temperature of Fe-Mg exchange against every one of Ca
-// exchange on the same basis of the same item.
+// exchange on the same basis of the same item. Where only one of the two states
+// an error, that one decides.
 func (e *evaluator) reset(estimates [][]estimate, i int) {
 	for l := range estimates {
 		for f := range estimates {
@@ -53,8 +54,11 @@ func (e *evaluator) reset(estimates [][]estimate, i int) {
 				continue
 			}
 			sc, sf := sigmaOf(e.k, l), sigmaOf(e.k, f)
-			if sc <= 0 || sf <= 0 {
+			if sc <= 0 && sf <= 0 {
 				continue // no error is known to hold the difference against
+			}
+			if slices.ContainsFunc(ca.outOf, func(b *method.Bound) bool { return b.Composition }) {
+				continue // a Ca temperature that means nothing shows no resetting
 			}
 			fs := qc.Reset(&e.s.manifest.QC, ca.c, sc, feMg.c, sf)
 			ca.found, feMg.found = append(ca.found, fs...), append(feMg.found, fs...)

@@ -133,7 +133,7 @@ func (s *state) tracePublished(k *kind, i int) (*report.Trace, error) {
 }
 
 func (s *state) startTrace(it item, row *tables.EstimateRow) *report.Trace {
-	t := &report.Trace{Method: row.Method, Component: row.Component, TC: row.TC, DTDP: row.DTDP, Reason: row.Reason,
+	t := &report.Trace{Method: row.Method, Component: row.Component, TC: row.TC, SigmaC: row.SigmaCalC, BoundC: row.BoundC, Status: row.Status, Verdict: row.Verdict, DTDP: row.DTDP, Reason: row.Reason,
 		PKbar: row.PKbar, PSource: row.PSource, Lineage: row.Lineage}
 	if it.pair >= 0 {
 		t.Pair = fmt.Sprintf("%s, rule %q, lineage %s", s.pairID(int(it.pair)), s.pairs[it.pair].Rule, s.pair[it.pair].lineage)

@@ -66,6 +66,8 @@ func (w *writers) end(table int) error {
 		w.analyses = nil
 	case pairsTable:
 		w.pairs = nil
+	case estimatesTable:
+		w.estimates = nil
 	}
 	return err
 }

@@ -96,7 +96,7 @@ func Concordance(limits *manifests.QC, ts [3]*float64, sigma [3]float64) []Findi
 		return nil
 	}
 	return []Finding{{Rule: "concordance", Effect: Flagged, Value: number(spread), Limit: text(limit, 0) + " degC",
-		Detail: fmt.Sprintf("the components' temperatures spread over %s degC, from %s to %s, beyond %s: not in equilibrium, reset on cooling, or at another pressure",
+		Detail: fmt.Sprintf("the components' temperatures spread over %s degC, from %s to %s, beyond %s: not in equilibrium, reset on cooling, at another pressure, or the model misfits these compositions",
 			text(spread, 0), text(*ts[low], 0), text(*ts[high], 0), text(limit, 0))}}
 }
 

@@ -12,6 +12,7 @@ import (
 type Estimate struct {
 	Info      *method.Info
 	Component string
+	C         float64         // the temperature, degC
 	OutOf     []*method.Bound // the bounds it is outside of
 	// OutOfValue holds the variable's value for each of OutOf, in the bound's unit.
 	OutOfValue []float64
@@ -26,26 +27,80 @@ type Estimate struct {
 
 // OfEstimate applies the rules for one temperature.
 func OfEstimate(e *Estimate) []Finding {
-	var out []Finding
+	out := implausible(e.C)
 	for i, b := range e.OutOf {
 		out = append(out, Finding{Rule: "outside calibrated range", Effect: Flagged, Value: number(e.OutOfValue[i]),
-			Limit:  fmt.Sprintf("%s to %s %s", text(b.Min, 4), text(b.Max, 4), b.Unit),
-			Detail: fmt.Sprintf("%s %s is outside the calibrated %s to %s %s", b.Name, text(e.OutOfValue[i], 4), text(b.Min, 4), text(b.Max, 4), b.Unit)})
+			Limit:  fmt.Sprintf("%s to %s%s", text(b.Min, 4), text(b.Max, 4), unitOf(b)),
+			Detail: fmt.Sprintf("%s %s is outside the calibrated %s to %s%s", b.Name, text(e.OutOfValue[i], digitsOf(b)), text(b.Min, 4), text(b.Max, 4), unitOf(b))})
 	}
 	if e.NoPressure {
 		out = append(out, Finding{Rule: "no pressure", Effect: Flagged, Limit: "stated by the source",
 			Detail: "no pressure is given: worked at 1 bar, and dT/dP is at most 1 degC/kbar"})
 	}
-	if e.Assumed {
-		out = append(out, Finding{Rule: "assumed pressure", Effect: Flagged, Value: number(e.PKbar), Limit: "stated by the source",
-			Detail: "assumed pressure: " + text(e.PKbar, 3) + " kbar is the manifest's, not the source's"})
-	}
+	out = append(out, OfBound(e)...)
 	out = append(out, setting(e)...)
+	out = append(out, coherency(e)...)
 	if need := e.Info.NeedsBeside; need != "" && !e.Beside {
-		out = append(out, Finding{Rule: "assemblage", Effect: Flagged, Limit: string(need) + " beside it",
+		out = append(out, Finding{Rule: Assemblage, Effect: Flagged, Limit: string(need) + " beside it",
 			Detail: fmt.Sprintf("no %s is recorded beside it: %s", need, e.Info.Assemblage)})
 	}
 	return append(out, weakComponent(e)...)
+}
+
+// digitsOf is how many decimals of a variable mean anything: none of a temperature.
+func digitsOf(b *method.Bound) int {
+	if b.Name == "T" {
+		return 0
+	}
+	return 4
+}
+
+// unitOf is the bound's unit behind a space, nothing for a pure number.
+func unitOf(b *method.Bound) string {
+	if b.Unit == "1" {
+		return ""
+	}
+	return " " + b.Unit
+}
+
+// A rock that holds two feldspars or pyroxenes exchanged between these, degC
+// (common practice, no source); a number outside says that the equation was
+// carried too far.
+const (
+	coldestC = 200
+	hottestC = 1800
+)
+
+func implausible(c float64) []Finding {
+	if c >= coldestC && c <= hottestC {
+		return nil
+	}
+	return []Finding{{Rule: "no temperature of a rock", Effect: SetAside, Value: number(c), Limit: fmt.Sprintf("%d to %d degC", coldestC, hottestC),
+		Detail: fmt.Sprintf("%s degC is outside %d to %d: the equation is carried too far", text(c, 0), coldestC, hottestC)}}
+}
+
+// Assemblage is the rule whose finding says that a mineral a method asks for is
+// not recorded.
+const Assemblage = "assemblage"
+
+// OfBound applies the rules that also hold for a bound.
+func OfBound(e *Estimate) []Finding {
+	if !e.Assumed {
+		return nil
+	}
+	return []Finding{{Rule: "assumed pressure", Effect: Flagged, Value: number(e.PKbar), Limit: "stated by the source",
+		Detail: "assumed pressure: " + text(e.PKbar, 3) + " kbar is the manifest's, not the source's"}}
+}
+
+// coherency flags the strain-free solvus on lamellae whose coherency nobody
+// states: where they are coherent it reads 65 to 72 degC high (Thompson &
+// Waldbaum 1969 against its coherent solvus with k of 603.6 cal/mol, from memory).
+func coherency(e *Estimate) []Finding {
+	if !strings.HasPrefix(e.Info.ID, "alkali-feldspar-solvus/") || strings.HasSuffix(e.Info.ID, "-coherent") {
+		return nil
+	}
+	return []Finding{{Rule: "coherency unknown", Effect: Flagged, Limit: "incoherent lamellae",
+		Detail: "strain-free solvus: were the lamellae coherent, it reads 65 to 72 degC too high; see the coherent reading beside it"}}
 }
 
 func setting(e *Estimate) []Finding {

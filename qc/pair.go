@@ -8,6 +8,7 @@ type Pair struct {
 	KD         *float64    // (Fe/Mg)cpx / (Fe/Mg)opx, all iron; pyroxene pairs
 	PublishedC [2]*float64 // degC, as each row gives it
 	PKbar      [2]*float64 // kbar, as each row gives it
+	Texture    [2]string   // as each row gives it
 }
 
 // OfPair applies the rules for one pair.
@@ -16,6 +17,10 @@ func OfPair(p *Pair) []Finding {
 	if p.KD != nil && *p.KD >= 1 {
 		out = append(out, Finding{Rule: "Mg number order", Effect: Flagged, Value: p.KD, Limit: "below 1",
 			Detail: fmt.Sprintf("Mg# of cpx is not above that of opx: (Fe/Mg)cpx / (Fe/Mg)opx is %s", text(*p.KD, 3))})
+	}
+	if t := p.Texture; t[0] != "" && t[1] != "" && t[0] != t[1] && !exsolved[t[0]] && !exsolved[t[1]] {
+		out = append(out, Finding{Rule: "textures differ", Effect: Flagged, Limit: "one textural position",
+			Detail: fmt.Sprintf("one side is %s, the other %s: did they ever exchange?", t[0], t[1])})
 	}
 	if differ(p.PKbar) {
 		out = append(out, Finding{Rule: "pressures differ", Effect: Flagged, Value: p.PKbar[1], Limit: text(*p.PKbar[0], 3) + " kbar",
@@ -27,6 +32,10 @@ func OfPair(p *Pair) []Finding {
 	}
 	return out
 }
+
+// exsolved are the textures of a grain that came apart, or was put together
+// again; they pair with each other and with any texture of the other mineral.
+var exsolved = map[string]bool{"host": true, "lamella": true, "lamellae": true, "re-integrated": true}
 
 func differ(v [2]*float64) bool { return v[0] != nil && v[1] != nil && *v[0] != *v[1] }
 

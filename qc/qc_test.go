@@ -219,6 +219,7 @@ func TestEstimateRules(t *testing.T) {
 		{"An in Pl at the limit", Estimate{Info: plain, Component: "Ab", AnPl: n(0.5)}, ""},
 		{"An in Pl above", Estimate{Info: plain, Component: "Ab", AnPl: n(0.501)}, "weak component"},
 	} {
+		c.e.C = 800
 		got := OfEstimate(&c.e)
 		if (c.rule == "" && len(got) != 0) || (c.rule != "" && (len(got) != 1 || got[0].Rule != c.rule || got[0].Effect != Flagged)) {
 			t.Errorf("%s: found %+v; want rule %q", c.name, got, c.rule)

@@ -72,6 +72,9 @@ func estimate(e Estimate) func(*manifests.Manifest) []Finding {
 		if e.Info == nil {
 			e.Info = &method.Info{}
 		}
+		if e.C == 0 {
+			e.C = 800
+		}
 		return OfEstimate(&e)
 	}
 }
@@ -152,11 +155,18 @@ var ruleCases = []ruleCase{
 	{"Fe3+ above total Fe", Noted, one(chem.Cpx, pyroxeneOf(4.02, map[chem.Cation]float64{chem.Fe2: 0.0549})), one(chem.Cpx, pyroxeneOf(4.02, map[chem.Cation]float64{chem.Fe2: 0.0550}))},
 	{"no method", Noted, func(*manifests.Manifest) []Finding { return OfCoverage("Grt") }, func(*manifests.Manifest) []Finding { return OfCoverage(chem.Pl) }},
 
+	{"column in doubt", Flagged, of(func(*manifests.QC) []Finding {
+		return columnsInDoubt([]SourceFinding{{"s", "Na2O", Finding{Rule: "swapped", Effect: Flagged}}}, "s")
+	}), of(func(*manifests.QC) []Finding {
+		return columnsInDoubt([]SourceFinding{{"s", "Na2O", Finding{Rule: "swapped", Effect: Noted}}, {"t", "Na2O", Finding{Effect: Flagged}}}, "s")
+	})},
 	{"phase in doubt", SetAside, of(func(*manifests.QC) []Finding { return InDoubt("Opx", true) }), of(func(*manifests.QC) []Finding { return InDoubt("Opx", false) })},
 	{"sides exchanged", SetAside, of(func(*manifests.QC) []Finding { return PyroxeneSides(0.7, 0.7) }), of(func(*manifests.QC) []Finding { return PyroxeneSides(0.05, 0.051) })},
 	{"sides exchanged", SetAside, feldspars([3]float64{0.7, 0.1, 0.2}, [3]float64{0.2, 0.7, 0.1}), feldspars([3]float64{0.2, 0.7, 0.1}, [3]float64{0.7, 0.1, 0.2})},
 	{"sides exchanged", SetAside, feldspars([3]float64{0.2, 0.6, 0.2}, [3]float64{0.7, 0.1, 0.2}), feldspars([3]float64{0.2, 0.6, 0.199}, [3]float64{0.7, 0.1, 0.2})},
 	{"Mg number order", Flagged, pair(Pair{KD: n(1)}), pair(Pair{KD: n(0.999)})},
+	{"textures differ", Flagged, pair(Pair{Texture: [2]string{"core", "matrix"}}), pair(Pair{Texture: [2]string{"core", "core"}})},
+	{"textures differ", Flagged, pair(Pair{Texture: [2]string{"core", "rim"}}), pair(Pair{Texture: [2]string{"re-integrated", "core"}})},
 	{"pressures differ", Flagged, pair(Pair{PKbar: [2]*float64{n(8), n(8.1)}}), pair(Pair{PKbar: [2]*float64{n(8), n(8)}})},
 	{"published temperatures differ", Flagged, pair(Pair{PublishedC: [2]*float64{n(800), n(801)}}), pair(Pair{PublishedC: [2]*float64{n(800), n(800)}})},
 	{"Fe-Mg distribution", Flagged, of(func(q *manifests.QC) []Finding { return Distribution(q, 0.499) }), of(func(q *manifests.QC) []Finding { return Distribution(q, 0.5) })},
@@ -165,10 +175,13 @@ var ruleCases = []ruleCase{
 	{"I-1 plagioclase", Flagged, feldspars([3]float64{0.2, 0.8, 0}, [3]float64{0.3, 0.049, 0.651}), feldspars([3]float64{0.2, 0.8, 0}, [3]float64{0.3, 0.05, 0.65})},
 	{"close to the critical curve", Flagged, feldspars([3]float64{0.5, 0.3, 0.2}, [3]float64{0.599, 0.201, 0.2}), feldspars([3]float64{0.5, 0.3, 0.2}, [3]float64{0.6, 0.2, 0.2})},
 
+	{"no temperature of a rock", SetAside, estimate(Estimate{C: 1800.1}), estimate(Estimate{C: 1800})},
+	{"no temperature of a rock", SetAside, estimate(Estimate{C: 199.9}), estimate(Estimate{C: 200})},
 	{"outside calibrated range", Flagged, estimate(Estimate{OutOf: []*method.Bound{{Name: "T", Unit: "degC", Min: 900, Max: 1400}}, OutOfValue: []float64{899}}), estimate(Estimate{})},
 	{"no pressure", Flagged, estimate(Estimate{NoPressure: true}), estimate(Estimate{})},
 	{"assumed pressure", Flagged, estimate(Estimate{Assumed: true, PKbar: 8}), estimate(Estimate{PKbar: 8})},
 	{"setting", Flagged, estimate(Estimate{Info: mantleOnly, Setting: "granulite"}), estimate(Estimate{Info: mantleOnly, Setting: "Mantle peridotite"})},
+	{"coherency unknown", Flagged, estimate(Estimate{Info: &method.Info{ID: "alkali-feldspar-solvus/x"}}), estimate(Estimate{Info: &method.Info{ID: "alkali-feldspar-solvus/x-coherent"}})},
 	{"assemblage", Flagged, estimate(Estimate{Info: &method.Info{NeedsBeside: chem.Cpx}}), estimate(Estimate{Info: &method.Info{NeedsBeside: chem.Cpx}, Beside: true})},
 	{"weak component", Flagged, estimate(Estimate{Component: "An", AnAfs: n(0.0099)}), estimate(Estimate{Component: "An", AnAfs: n(0.01)})},
 	{"weak component", Flagged, estimate(Estimate{Component: "Or", OrPl: n(0.0099)}), estimate(Estimate{Component: "Or", OrPl: n(0.01)})},

@@ -62,6 +62,22 @@ func (s *Surveyed) Of(i int) []Finding {
 	if sh, ok := s.shifted[int32(i)]; ok {
 		out = append(out, sh.finding())
 	}
+	if len(s.Sources) > 0 {
+		b, _ := s.all.At(i)
+		out = append(out, columnsInDoubt(s.Sources, b.Source)...)
+	}
+	return out
+}
+
+// columnsInDoubt puts on an analysis what its source's columns are flagged for.
+func columnsInDoubt(found []SourceFinding, source string) []Finding {
+	var out []Finding
+	for _, f := range found {
+		if f.Source == source && f.Effect == Flagged {
+			out = append(out, Finding{Rule: "column in doubt", Effect: Flagged, Limit: "columns as their headers say",
+				Detail: f.Column + " of this source: " + f.Rule})
+		}
+	}
 	return out
 }
 

@@ -120,14 +120,30 @@ func (r *Rows) compare(a, b *Lane, rows []int32) (tables.DiscrepancyRow, bool) {
 	return tables.DiscrepancyRow{
 		PairKind: r.PairKind, Variant: r.Variant,
 		MethodA: a.Method, ComponentA: a.Component, MethodB: b.Method, ComponentB: b.Component,
-		PublishedKind: b.PublishedKind,
-		N:             int64(s.N), NSamples: int64(len(samples)), NSources: int64(len(sources)),
+		PublishedKind: b.PublishedKind, ClosesA: closes(a), ClosesB: closes(b), Shared: shared(a, b),
+		N: int64(s.N), NSamples: int64(len(samples)), NSources: int64(len(sources)),
 		MeanDiffC: ptr(s.Mean), MedianDiffC: ptr(s.Median), MedianAbsDiffC: ptr(s.MedianAbs),
 		SDC: ptr(s.SD), MADC: ptr(s.MAD), LoALowC: ptr(s.LoALow), LoAHighC: ptr(s.LoAUp),
 	}, true
 }
 
 // derived says whether one method is a function of the other, or both of a third.
+func closes(l *Lane) string {
+	if l.Info == nil {
+		return ""
+	}
+	return l.Info.Closes
+}
+
+// shared says whether either method names the other as sharing data or
+// constants; a method shares them with itself.
+func shared(a, b *Lane) bool {
+	if a.Info == nil || b.Info == nil {
+		return false
+	}
+	return a.Method == b.Method || slices.Contains(a.Info.Shares, b.Method) || slices.Contains(b.Info.Shares, a.Method)
+}
+
 func derived(a, b *Lane) bool {
 	if a.Info == nil || b.Info == nil || a.Method == b.Method {
 		return false

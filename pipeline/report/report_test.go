@@ -37,7 +37,7 @@ func TestSummaryLinesFit(t *testing.T) {
 	sd := 12.0
 	s := &Summary{Title: strings.Repeat("a long title ", 40), Cautions: []string{strings.Repeat("caution ", 60)},
 		Discrepancies: []tables.DiscrepancyRow{{PairKind: "two-feldspar", MethodA: "two-feldspar/fuhrman-lindsley-1988", ComponentA: "An",
-			MethodB: "two-feldspar/elkins-grove-1990", ComponentB: "An", N: 3, MedianDiffC: &sd, SDC: &sd}}}
+			MethodB: "two-feldspar/elkins-grove-1990", ComponentB: "An", N: 3, MedianDiffC: &sd, MADC: &sd, SDC: &sd}}}
 	for _, line := range strings.Split(s.Text(), "\n") {
 		if len(line) > 104 {
 			t.Errorf("line of %d characters: %s", len(line), line)
@@ -49,7 +49,7 @@ func TestSummaryLinesFit(t *testing.T) {
 // methods only the largest, and the rest is counted.
 func TestSummaryListsTheLargestDisagreements(t *testing.T) {
 	row := func(ma, ca, mb, cb string, d float64) tables.DiscrepancyRow {
-		return tables.DiscrepancyRow{PairKind: "k", MethodA: ma, ComponentA: ca, MethodB: mb, ComponentB: cb, N: 2, MedianDiffC: &d}
+		return tables.DiscrepancyRow{PairKind: "k", MethodA: ma, ComponentA: ca, MethodB: mb, ComponentB: cb, N: 3, MedianDiffC: &d, MADC: &d}
 	}
 	s := &Summary{Discrepancies: []tables.DiscrepancyRow{row("k/x", "Ab", "k/x", "Or", 1), row("k/x", "Ab", "as-published", "", 1)}}
 	for i := range 10 {

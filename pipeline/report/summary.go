@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strconv"
 	"strings"
 
 	"tieline/pipeline/problem"
@@ -17,6 +18,7 @@ type Summary struct {
 	Title         string
 	Sources       []Source
 	Counts        []Count
+	Units         []Unit
 	Temperatures  []Temperature
 	NoNumbers     []Tally // estimates without a number: what, why, how many
 	Findings      []Tally // rules that fired
@@ -40,13 +42,24 @@ type Count struct {
 	In, Kept, Flagged, SetAside int64
 }
 
+// Unit is what the methods of one pair kind say of one unit and texture: the
+// lowest and the highest of their medians of sample medians.
+type Unit struct {
+	Unit, Texture, PairKind     string
+	Samples, Methods            int64
+	Lowest, Highest             float64 // degC
+	LowestMethod, HighestMethod string
+}
+
 // Temperature is one method and component over all pairs.
 type Temperature struct {
 	PairKind, Method, Component string
 	PublishedKind, Variant      string // Variant: "" on the method's own basis
 	N                           int
-	Median, Low, High           float64 // degC
-	SigmaC                      float64 // calibration 1-sigma, degC
+	InRange                     int64   // of N, those inside the calibrated range
+	Low, High                   float64 // degC
+	SigmaC                      float64 // calibration 1-sigma, degC; 0 for none
+	Recalled                    bool    // coefficients from memory, never checked
 }
 
 // Tally is how often something happened, with its first case.
@@ -64,6 +77,7 @@ func (s *Summary) Text() string {
 	var b strings.Builder
 	wrap(&b, "", "", problem.CleanAll(s.Title))
 	s.sources(&b)
+	s.units(&b)
 	s.temperatures(&b)
 	s.discrepancies(&b)
 	s.quality(&b)
@@ -100,24 +114,46 @@ func cleanJoin(texts []string) string {
 	return strings.Join(out, ", ")
 }
 
+func (s *Summary) units(b *strings.Builder) {
+	if len(s.Units) == 0 {
+		return
+	}
+	b.WriteString("\nMedians per unit and texture, degC: from the coldest method to the hottest, composition in range\n")
+	fmt.Fprintf(b, "  %-24s %-18s %-22s %7s\n", "unit", "texture", "from", "samples")
+	for _, u := range s.Units {
+		span := fmt.Sprintf("%.0f %s to %.0f %s", u.Lowest, u.LowestMethod, u.Highest, u.HighestMethod)
+		if u.Methods == 1 {
+			span = fmt.Sprintf("%.0f %s", u.Lowest, u.LowestMethod)
+		}
+		fmt.Fprintf(b, "  %-24s %-18s %-22s %7d  %s\n", problem.Clean(u.Unit), problem.Clean(u.Texture), u.PairKind, u.Samples, span)
+	}
+}
+
 func (s *Summary) temperatures(b *strings.Builder) {
-	b.WriteString("\nTemperatures, degC (rows set aside left out)\n")
+	b.WriteString("\nTemperatures over all units and textures, degC (rows set aside left out)\n")
 	kind := ""
 	for _, t := range s.Temperatures {
 		if t.PairKind != kind {
 			kind = t.PairKind
-			fmt.Fprintf(b, "  %-42s %6s %8s %8s %8s %8s\n", kind, "n", "lowest", "median", "highest", "cal. +-")
+			fmt.Fprintf(b, "  %-52s %6s %9s %8s %8s %8s\n", kind, "n", "in range", "lowest", "highest", "cal. +-")
 		}
 		sigma := ""
 		if t.SigmaC > 0 {
 			sigma = fmt.Sprintf("%.0f", t.SigmaC)
 		}
 		name := name(t.PairKind, t.Method, t.Component, t.Variant, t.PublishedKind)
+		if t.Recalled {
+			name += " (recalled)"
+		}
 		if t.N == 0 {
-			fmt.Fprintf(b, "    %-40s %6d\n", name, 0)
+			fmt.Fprintf(b, "    %-50s %6d\n", name, 0)
 			continue
 		}
-		fmt.Fprintf(b, "    %-40s %6d %8.0f %8.0f %8.0f %8s\n", name, t.N, t.Low, t.Median, t.High, sigma)
+		in := ""
+		if t.Method != discrepancyWithPublished {
+			in = strconv.FormatInt(t.InRange, 10)
+		}
+		fmt.Fprintf(b, "    %-50s %6d %9s %8.0f %8.0f %8s\n", name, t.N, in, t.Low, t.High, sigma)
 	}
 	for _, n := range s.NoNumbers {
 		wrap(b, "  ", "    ", fmt.Sprintf("no number: %d x %s: %s", n.N, n.What, n.Effect))
@@ -134,6 +170,9 @@ func name(kind string, words ...string) string {
 // listedDisagreements is how many comparisons between methods the summary lists.
 const listedDisagreements = 8
 
+// leastForRank is how many differences a comparison needs to be among the largest.
+const leastForRank = 3
+
 // discrepancies lists the comparisons that say something at a glance: a method's
 // components with each other, everything with the published temperatures, and
 // the largest disagreements between methods. The table holds them all.
@@ -144,7 +183,7 @@ func (s *Summary) discrepancies(b *strings.Builder) {
 	b.WriteString("\nWhere calibrations disagree, a minus b, degC, over all rows\n")
 	left := 0
 	for _, kind := range s.kinds() {
-		fmt.Fprintf(b, "  %-66s %6s %8s %8s %8s\n", kind, "n", "samples", "median", "SD")
+		fmt.Fprintf(b, "  %-62s %6s %8s %8s %6s %6s\n", kind, "n", "samples", "median", "MAD", "SD")
 		var own, published, between []*tables.DiscrepancyRow
 		for i := range s.Discrepancies {
 			d := &s.Discrepancies[i]
@@ -154,8 +193,10 @@ func (s *Summary) discrepancies(b *strings.Builder) {
 				published = append(published, d)
 			case d.MethodA == d.MethodB:
 				own = append(own, d)
-			default:
+			case d.N >= leastForRank:
 				between = append(between, d)
+			default:
+				left++
 			}
 		}
 		slices.SortStableFunc(between, func(x, y *tables.DiscrepancyRow) int {
@@ -195,8 +236,9 @@ func listed(b *strings.Builder, heading string, rows []*tables.DiscrepancyRow) {
 		if d.SDC != nil {
 			sd = fmt.Sprintf("%.0f", *d.SDC)
 		}
+		mad := fmt.Sprintf("%.0f", *d.MADC)
 		pair := name(d.PairKind, d.MethodA, d.ComponentA) + " - " + name(d.PairKind, d.MethodB, d.ComponentB, d.PublishedKind)
-		fmt.Fprintf(b, "      %-62s %6d %8d %8s %8s\n", pair, d.N, d.NSamples, signed(*d.MedianDiffC), sd)
+		fmt.Fprintf(b, "      %-58s %6d %8d %8s %6s %6s\n", pair, d.N, d.NSamples, signed(*d.MedianDiffC), mad, sd)
 	}
 }
 

@@ -23,6 +23,10 @@ type Trace struct {
 	Quantities []Quantity       `json:"quantities,omitempty"`
 	Constants  []Constant       `json:"constants,omitempty"`
 	TC         *float64         `json:"t_c"`
+	SigmaC     *float64         `json:"sigma_calibration_c,omitempty"`
+	BoundC     *float64         `json:"bound_c,omitempty"`
+	Status     string           `json:"status"`
+	Verdict    string           `json:"verdict"`
 	DTDP       *float64         `json:"dt_dp_c_per_kbar,omitempty"`
 	Reason     string           `json:"reason,omitempty"`
 	Lineage    string           `json:"lineage"`
@@ -120,10 +124,22 @@ func (t *Trace) numbers(b *strings.Builder) {
 
 func (t *Trace) outcome(b *strings.Builder) {
 	b.WriteString("\n")
-	if t.TC == nil {
+	switch {
+	case t.TC != nil:
+		fmt.Fprintf(b, "T = %.0f degC", *t.TC)
+		if t.SigmaC != nil {
+			fmt.Fprintf(b, " +- %.0f (calibration, 1 sigma)", *t.SigmaC)
+		}
+		fmt.Fprintf(b, ", to the last bit %s\n", digits(*t.TC))
+		if t.Reason != "" {
+			wrap(b, "", "  ", t.Verdict+": "+t.Reason)
+		} else {
+			fmt.Fprintf(b, "%s\n", t.Verdict)
+		}
+	case t.BoundC != nil:
+		fmt.Fprintf(b, "T is %s %.0f degC: %s\n", t.Status, *t.BoundC, t.Reason)
+	default:
 		fmt.Fprintf(b, "T: no number: %s\n", t.Reason)
-	} else {
-		fmt.Fprintf(b, "T = %s degC\n", digits(*t.TC))
 	}
 	if t.DTDP != nil {
 		fmt.Fprintf(b, "dT/dP = %s degC/kbar\n", strconv.FormatFloat(*t.DTDP, 'g', 6, 64))
@@ -133,7 +149,7 @@ func (t *Trace) outcome(b *strings.Builder) {
 	case t.Run == "":
 		b.WriteString("No result to compare with; worked out afresh.\n")
 	case t.SameAsRun:
-		fmt.Fprintf(b, "The result in %s has the same temperature and lineage.\n", problem.Clean(t.Run))
+		fmt.Fprintf(b, "The result in %s holds the same.\n", problem.Clean(t.Run))
 	default:
 		fmt.Fprintf(b, "The result in %s DIFFERS: it was made from other cells, settings or constants. Run again.\n", problem.Clean(t.Run))
 	}

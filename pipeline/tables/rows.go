@@ -221,6 +221,7 @@ type EstimateRow struct {
 	Method        string   `parquet:"method" doc:"Id of the published calibration; the command methods lists them with their equations"`
 	Component     string   `parquet:"component,optional" doc:"The end member whose equilibrium gives the temperature, Ab, Or or An; NULL where a method gives one temperature"`
 	TC            *float64 `parquet:"t_c,optional" unit:"degC" doc:"The temperature; NULL where there is none, with the reason"`
+	SigmaCalC     *float64 `parquet:"sigma_calibration_c,optional" unit:"degC" doc:"1-sigma of the calibration, as the method states it; errors of the analyses and of pressure come on top, and it does not average; NULL where the method has none, and where there is no temperature"`
 	BoundC        *float64 `parquet:"bound_c,optional" unit:"degC" doc:"The temperature with the detection limit put for a component that is below it: status says whether the temperature is at most or at least that; NULL for other estimates"`
 	DTDP          *float64 `parquet:"dt_dp_c_per_kbar,optional" unit:"degC/kbar" doc:"Change of the temperature with pressure at p_kbar, from P +- 100 bar; NULL where there is no temperature"`
 	PKbar         *float64 `parquet:"p_kbar,optional" unit:"kbar" doc:"Pressure the temperature is computed at; NULL where none is known"`
@@ -251,10 +252,10 @@ type SampleRow struct {
 	Closes        string   `parquet:"closes,optional" doc:"The system that closes on cooling; rows of different systems are not to be averaged; NULL for as-published"`
 	Standing      string   `parquet:"standing,optional" doc:"How sure it is that the coefficients are the published ones; NULL for as-published"`
 	PublishedKind string   `parquet:"published_kind,optional" doc:"For method as-published, what the temperatures are: experiment, thermometer or estimate; NULL for other methods"`
-	N             int64    `parquet:"n" doc:"Pairs or analyses that count: neither set aside nor out of range in composition"`
+	N             int64    `parquet:"n" doc:"Pairs or analyses that count: neither set aside nor out of range in composition or assemblage"`
 	NSamples      int64    `parquet:"n_samples" doc:"Samples they come from"`
-	NSources      int64    `parquet:"n_sources" doc:"Sources they come from; at level unit the most of any sample"`
-	NLeftOut      int64    `parquet:"n_left_out" doc:"Estimates left out since they are set aside or out of range in composition"`
+	NSources      int64    `parquet:"n_sources" doc:"Sources they come from"`
+	NLeftOut      int64    `parquet:"n_left_out" doc:"Estimates left out since they are set aside or out of range in composition or assemblage"`
 	MedianC       *float64 `parquet:"median_c,optional" unit:"degC" doc:"Median; NULL where n is 0"`
 	MADC          *float64 `parquet:"mad_c,optional" unit:"degC" doc:"Median absolute deviation from the median, raw; NULL where n is 0"`
 	LowestC       *float64 `parquet:"lowest_c,optional" unit:"degC" doc:"Lowest; NULL where n is 0"`
@@ -273,6 +274,9 @@ type DiscrepancyRow struct {
 	MethodB        string   `parquet:"method_b" doc:"Id of method b; as-published is always b"`
 	ComponentB     string   `parquet:"component_b,optional" doc:"Component of method b; NULL where it gives one temperature"`
 	PublishedKind  string   `parquet:"published_kind,optional" doc:"Where b is as-published, what its temperatures are: experiment, thermometer or estimate; NULL where the source does not say, and for other methods"`
+	ClosesA        string   `parquet:"closes_a,optional" doc:"The system method a closes with on cooling; NULL for as-published"`
+	ClosesB        string   `parquet:"closes_b,optional" doc:"The system method b closes with on cooling; NULL for as-published. Two systems may differ because they closed at different temperatures"`
+	Shared         bool     `parquet:"shared" doc:"Whether the two methods share data or constants: their agreement is no evidence. Methods made from one another are not compared"`
 	N              int64    `parquet:"n" doc:"Number of differences"`
 	NSamples       int64    `parquet:"n_samples" doc:"Number of samples they come from"`
 	NSources       int64    `parquet:"n_sources" doc:"Number of sources they come from"`

@@ -20,8 +20,9 @@ var Haselton1983 = (&haselton{H: 18810, HX: 17030, V: .364, Pl: 28230, PlY: -395
 	Ref: "Haselton HT, Hovis GL, Hemingway BS, Robie RA (1983) Calorimetric investigation of the excess entropy of mixing in " +
 		"analbite-sanidine solid solutions: lack of evidence for Na,K short-range order and implications for two-feldspar thermometry. " +
 		"Am Mineral 68:398-413; binary fractions of ternary compositions are our reading",
-	Shares:   []string{"two-feldspar/elkins-grove-1990", "two-feldspar/fuhrman-lindsley-1988", haseltonSolvusID},
-	Standing: method.Consistent,
+	Shares:      []string{"two-feldspar/elkins-grove-1990", "two-feldspar/fuhrman-lindsley-1988"},
+	DerivedFrom: []string{haseltonSolvusID},
+	Standing:    method.Consistent,
 	Sigma: method.Sigma{C: []float64{52},
 		Origin: "misfit (rms) on the 17 runs of Elkins & Grove 1990 with plagioclase below An50, to which the method was not fitted"},
 	Range: method.Range{

@@ -52,6 +52,15 @@ func (r *Reader) Leaf(l *method.Leaf) (float64, method.Reason) {
 	if !usable(r.c, l) {
 		return 0, method.NoFormula
 	}
+	// Ferric iron from charge balance comes from the whole cation sum: with a
+	// major cation unknown it would be zero without a word.
+	if l.Basis.Ferric == method.Balanced {
+		for _, major := range majors[l.Phase] {
+			if !determined(r.c, major) {
+				return 0, method.NotMeasured
+			}
+		}
+	}
 	f := r.Formula(l.Basis)
 	if f.Why != method.OK {
 		return 0, f.Why
@@ -64,6 +73,12 @@ func (r *Reader) Leaf(l *method.Leaf) (float64, method.Reason) {
 		sum += f.Apfu[cation]
 	}
 	return sum, method.OK
+}
+
+// majors are the cations without which the sum of a formula says nothing.
+var majors = map[chem.Phase][]chem.Cation{
+	chem.Opx: {chem.Si, chem.Al, chem.Fe2, chem.Mg, chem.Ca},
+	chem.Cpx: {chem.Si, chem.Al, chem.Fe2, chem.Mg, chem.Ca, chem.Na},
 }
 
 func (r *Reader) endMember(m chem.Measurand) (float64, method.Reason) {

@@ -1,6 +1,8 @@
 package pyroxene
 
 import (
+	"slices"
+
 	"tieline/thermo/chem"
 	"tieline/thermo/method"
 )
@@ -25,7 +27,7 @@ var BreyKoehler1990 = func() *method.Method {
 			Closes:     "Ca solvus",
 			Needs:      []*method.Quantity{lnKStar, xFeInCpx, xFeInOpx},
 			Basis:      SixOxygens,
-			Range:      breyKoehlerRange,
+			Range:      bknRange,
 			Sigma:      method.Sigma{C: []float64{15}, Origin: "quoted, from memory"},
 			Standing:   method.Confirmed,
 		},
@@ -47,6 +49,14 @@ var breyKoehlerRange = method.Range{
 		caOfOpx,
 	},
 }
+
+// bknRange adds that BKN reads high where clinopyroxene holds much sodium, by 150
+// degC at Na .25 (Nimis & Gruetter 2010).
+var bknRange = func() method.Range {
+	r := breyKoehlerRange
+	r.Bounds = append(slices.Clone(r.Bounds), method.Bound{Name: "Na in Cpx", Unit: "apfu on 6 O", Quantity: naInCpx, Min: 0, Max: 0.1, Composition: true})
+	return r
+}()
 
 // caOfOpx keeps out what is no orthopyroxene: the equations give a clinopyroxene
 // under that label a temperature too. Experiments reach 0.11 at 1500 degC
