@@ -469,9 +469,6 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 		row.SigmaCalC = &sigma
 	}
 	in := len(est.outOf) == 0
-	if in {
-		r.inRange[lane]++
-	}
 	row.InRange, row.OutOfRange = &in, boundNames(est.outOf)
 	findings := append(qc.OfEstimate(e.s.qcEstimate(e.k, it, l, est, p)), est.found...)
 	own, reasons := qc.Judge(findings)
@@ -482,6 +479,9 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 	r.findings = append(r.findings, e.s.findingRows("estimate", row.EstimateID, it.a, findings)...)
 	if v != qc.SetAsideRow {
 		l.T[i] = est.c
+		if in {
+			r.inRange[lane]++
+		}
 	}
 	e.k.outside[lane][i] = v == qc.SetAsideRow || slices.ContainsFunc(est.outOf, func(b *method.Bound) bool { return b.Composition }) ||
 		slices.ContainsFunc(findings, func(f qc.Finding) bool { return f.Rule == qc.Assemblage })
