@@ -139,7 +139,7 @@ func (a *analyses) phase(cell string) {
 func (a *analyses) accept(c *column, cell string, r reading) reading {
 	if r.fault != readable {
 		if a.one.Text[tables.SetAside] == "" {
-			a.problems = append(a.problems, a.cells.problem(cell, r.fault))
+			a.problems = append(a.problems, a.cells.problem(cell, r.fault, c.quantity))
 		}
 		r = reading{}
 	}
@@ -181,7 +181,8 @@ func (a *analyses) sampleGiven(row []string, r *rows) {
 
 // renormalise brings end-member fractions to the sum 1, limits and 1-sigmas
 // with them, and keeps the sum they had. Where Ab, Or or An was not given the
-// rest says nothing of the whole and stays as it is; Cn may be absent.
+// rest says nothing of the whole and stays as it is, as it does where the
+// fractions cancel to next to nothing; Cn may be absent.
 func renormalise(a *tables.Analysis) {
 	c := &a.Composition
 	sum := 0.0
@@ -189,7 +190,7 @@ func renormalise(a *tables.Analysis) {
 		sum += c.Amount(m)
 	}
 	a.EndMemberSum = sum
-	if sum <= 0 || !c.Determined(chem.XAb) || !c.Determined(chem.XOr) || !c.Determined(chem.XAn) {
+	if sum < leastSum || !c.Determined(chem.XAb) || !c.Determined(chem.XOr) || !c.Determined(chem.XAn) {
 		return
 	}
 	for m := chem.XAb; m <= chem.XCn; m++ {
@@ -197,6 +198,9 @@ func renormalise(a *tables.Analysis) {
 		a.Sigma[m] /= sum
 	}
 }
+
+// leastSum keeps a fraction that is divided by the sum finite.
+const leastSum = 1e-6
 
 func (c *Column) number(x float64) {
 	if c.Numbers == 0 || x < c.Min {

@@ -73,6 +73,29 @@ type reading struct {
 // stands: a background above the peak makes small negative amounts, and whether
 // to use them is not for the reader to say.
 func (c *cells) number(cell string) reading {
+	return bounded(c.read(cell), mostAmount, farAmount)
+}
+
+// Numbers beyond these, either way where they may be negative, are slips: a
+// wrong unit, a decimal mark that was lost, a code for missing. Sums and ratios
+// of what is within them stay finite.
+const (
+	mostAmount = 1e6 // wt%, apfu or fraction, 1-sigmas too
+	mostKbar   = 500
+	mostC      = 3000
+	mostNumber = 1e9 // coordinates and all else, in its own unit
+)
+
+// bounded refuses a number, or a limit, that is out of all reason.
+func bounded(r reading, most float64, fault cellFault) reading {
+	if math.Abs(r.value) > most {
+		return reading{fault: fault}
+	}
+	return r
+}
+
+// read reads a number of any size.
+func (c *cells) read(cell string) reading {
 	if state, ok := c.marked(cell); ok {
 		return reading{state: state}
 	}
@@ -92,11 +115,13 @@ func (c *cells) number(cell string) reading {
 
 // sigma reads a 1-sigma. A word for not analysed or below detection says that
 // there is none.
-func (c *cells) sigma(cell string) reading { return check(c.measured(cell), 0, negative) }
+func (c *cells) sigma(cell string) reading {
+	return bounded(check(c.measured(cell), 0, negative), mostAmount, farAmount)
+}
 
 // measured reads a number that has no detection limit.
 func (c *cells) measured(cell string) reading {
-	r := c.number(cell)
+	r := c.read(cell)
 	if cell != "" && cell[0] == '<' && r.state == chem.BelowDetection {
 		if _, word := c.marked(cell); !word {
 			return reading{fault: limitRefused}
@@ -109,14 +134,13 @@ func (c *cells) measured(cell string) reading {
 func (c *cells) plain(cell string, u *use) reading {
 	r := c.measured(cell)
 	r.value = u.scale.apply(r.value)
-	if math.IsInf(r.value, 0) {
-		return reading{fault: overflow}
-	}
 	switch u.number {
 	case tables.PublishedC:
-		return check(r, float64(-chem.ZeroCelsius), tooCold)
-	case tables.PublishedSigmaC, tables.PublishedPKbar, tables.PKbar, tables.PSigmaKbar:
-		return check(r, 0, negative)
+		return bounded(check(r, float64(-chem.ZeroCelsius), tooCold), mostC, tooHot)
+	case tables.PublishedPKbar, tables.PKbar:
+		return bounded(check(r, 0, negative), mostKbar, farPressure)
+	case tables.PublishedSigmaC, tables.PSigmaKbar:
+		return bounded(check(r, 0, negative), mostNumber, farNumber)
 	case tables.AreaFraction:
 		if r.state == chem.Measured && !(r.value >= 0 && r.value <= 1) {
 			return reading{fault: notFraction}
@@ -126,7 +150,7 @@ func (c *cells) plain(cell string, u *use) reading {
 			return reading{fault: notCount}
 		}
 	}
-	return r
+	return bounded(r, mostNumber, farNumber)
 }
 
 // check refuses a number below the least that makes sense.
@@ -151,8 +175,8 @@ func (s scale) apply(x float64) float64 {
 	return x
 }
 
-// problem says what is wrong with a cell and what to do about it.
-func (c *cells) problem(cell string, fault cellFault) problem.Problem {
+// problem says what is wrong with a cell of a quantity and what to do about it.
+func (c *cells) problem(cell string, fault cellFault, q manifests.Quantity) problem.Problem {
 	p := problem.Problem{Kind: "number", Found: problem.Quote(cell), Expected: "a number with a decimal " + c.markName()}
 	switch fault {
 	case wordy:
@@ -183,8 +207,33 @@ func (c *cells) problem(cell string, fault cellFault) problem.Problem {
 	case notCount:
 		p.Found += " is no count"
 		p.Expected = "a whole number of 1 or more"
+	case farAmount, farPressure, tooHot, farNumber:
+		p.Found += " is out of all reason"
+		p.Expected, p.Do = reason(fault, q)
 	}
 	return p
+}
+
+// reason gives the range of what a far number should have been, and what to do.
+func reason(fault cellFault, q manifests.Quantity) (expected, do string) {
+	const orElse = "correct the cell, or list the text in missing if it means that there is none"
+	switch fault {
+	case farPressure:
+		return fmt.Sprintf("a pressure from 0 to %d kbar", mostKbar), pressureAdvice[q] + orElse
+	case tooHot:
+		return fmt.Sprintf("a temperature up to %d degC", mostC), "check the unit, " + orElse
+	case farAmount:
+		return "a number from -1e6 to 1e6", orElse
+	}
+	return "a number from -1e9 to 1e9", orElse
+}
+
+// pressureAdvice asks for the smaller units a pressure may be written in.
+var pressureAdvice = map[manifests.Quantity]string{
+	manifests.PublishedPKbar: "is the unit MPa or bar? convert the column to kbar; else ",
+	manifests.PKbar:          "is the unit MPa or bar? map the column to p_mpa or p_bar; else ",
+	manifests.PGpa:           "is the unit kbar, MPa or bar? map the column to p_kbar, p_mpa or p_bar; else ",
+	manifests.PMpa:           "is the unit bar? map the column to p_bar; else ",
 }
 
 func (c *cells) markName() string {

@@ -19,6 +19,10 @@ const (
 	tooCold                // below absolute zero
 	notFraction            // where only a share of the whole makes sense
 	notCount               // where only a count makes sense
+	farAmount              // no composition holds so much
+	farPressure            // no rock comes from so deep
+	tooHot                 // no rock is so hot
+	farNumber              // nothing here is so large
 )
 
 // minus is U+2212, which typeset tables use for a minus.
