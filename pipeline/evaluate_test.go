@@ -303,3 +303,16 @@ func TestResettingIsFlagged(t *testing.T) {
 		t.Errorf("pair D, Wells 819 and Fe-Mg 539: %d findings; expected one on each", n)
 	}
 }
+
+// Two pairs whose parts would join to one name keep ids of their own.
+func TestPairIDsDoNotCollide(t *testing.T) {
+	dir := compile(t, "composition = \"end-member fraction\"\n", "sample,pair,phase,Ab,Or,An\n"+
+		"S1,a/1,Afs,.3,.68,.02\nS1,a/1,Pl,.7,.06,.24\nS1/a,1,Afs,.3,.68,.02\nS1/a,1,Pl,.7,.06,.24\n")
+	ids := map[string]bool{}
+	for _, p := range readTable[tables.PairRow](t, dir, "pairs") {
+		ids[p.PairID] = true
+	}
+	if len(ids) != 2 {
+		t.Errorf("pair ids %v; expected two", ids)
+	}
+}

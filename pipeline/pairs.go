@@ -209,14 +209,20 @@ func (s *state) beside(i int32, need chem.Phase) bool {
 
 // pairID names a pair by the label its rows share, or by its two analyses where
 // another rule paired them: names that stay when rows come or go elsewhere.
+// joinable escapes, as in a URL, what a pair_id joins its parts with, so that no
+// two pairs share one.
+var joinable = strings.NewReplacer("%", "%25", "/", "%2F", "+", "%2B", "|", "%7C")
+
 func (s *state) pairID(i int) string {
 	a, ra := s.all.At(int(s.pairs[i].A))
 	name := s.pairLabel(i)
+	name = joinable.Replace(name)
 	if name == "" {
 		b, rb := s.all.At(int(s.pairs[i].B))
-		name = strings.TrimPrefix(a.Text(tables.AnalysisID, ra), a.Source+"/") + "+" + strings.TrimPrefix(b.Text(tables.AnalysisID, rb), b.Source+"/")
+		name = joinable.Replace(strings.TrimPrefix(a.Text(tables.AnalysisID, ra), a.Source+"/")) + "+" +
+			joinable.Replace(strings.TrimPrefix(b.Text(tables.AnalysisID, rb), b.Source+"/"))
 	}
-	return a.Source + "/" + a.Text(tables.Sample, ra) + "/" + name + ":" + pairing.Kinds[s.pairs[i].Kind].Name
+	return a.Source + "/" + joinable.Replace(a.Text(tables.Sample, ra)) + "/" + name + ":" + pairing.Kinds[s.pairs[i].Kind].Name
 }
 
 // pairLabel is the label that made a pair, "" where another rule did.

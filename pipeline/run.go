@@ -58,6 +58,9 @@ func Run(path string, opt Options) (*Result, error) {
 	case opt.Replace:
 		policy = folder.Replace
 	}
+	if err := apart(out, path, m); err != nil {
+		return nil, err
+	}
 	f, err := folder.Open(out, policy)
 	if err != nil {
 		return nil, err
@@ -72,6 +75,51 @@ func Run(path string, opt Options) (*Result, error) {
 	}
 	r.Folder = out
 	return r, nil
+}
+
+// apart refuses a result folder that holds the manifest or a source: replacing
+// it would delete what the run is reading.
+func apart(out, path string, m *manifests.Manifest) error {
+	target, err := resolved(out)
+	if err != nil {
+		return err
+	}
+	dir := path
+	if info, err := os.Stat(path); err == nil && !info.IsDir() {
+		dir = filepath.Dir(path)
+	}
+	if dir, err = resolved(dir); err != nil {
+		return err
+	}
+	inputs := []string{filepath.Join(dir, manifests.FileName)}
+	for i := range m.Sources {
+		inputs = append(inputs, filepath.Join(dir, filepath.FromSlash(m.Sources[i].File)))
+	}
+	for _, input := range inputs {
+		if rel, err := filepath.Rel(target, input); err == nil && filepath.IsLocal(rel) {
+			return fmt.Errorf("the result folder %s holds %s, which this run reads; name another folder with --out",
+				problem.CleanAll(out), problem.CleanAll(filepath.ToSlash(rel)))
+		}
+	}
+	return nil
+}
+
+// resolved is the absolute path with links followed as far as it exists.
+func resolved(path string) (string, error) {
+	abs, err := filepath.Abs(path)
+	if err != nil {
+		return "", err
+	}
+	rest := ""
+	for at := abs; ; at = filepath.Dir(at) {
+		if real, err := filepath.EvalSymlinks(at); err == nil {
+			return filepath.Join(real, rest), nil
+		}
+		if filepath.Dir(at) == at {
+			return abs, nil
+		}
+		rest = filepath.Join(filepath.Base(at), rest)
+	}
 }
 
 // runInto works the stages in order into an empty folder.
@@ -191,11 +239,11 @@ func (s *state) evaluate(w *writers, opt Options) ([]*kind, verdicts, error) {
 		total += int64(len(k.items))
 	}
 	for _, k := range kinds {
-		evaluators := make([]*evaluator, opt.Workers)
+		blocks := (len(k.items) + itemRows - 1) / itemRows
+		evaluators := make([]*evaluator, min(opt.Workers, max(1, blocks)))
 		for i := range evaluators {
 			evaluators[i] = s.newEvaluator(k)
 		}
-		blocks := (len(k.items) + itemRows - 1) / itemRows
 		err := ordered(blocks, opt.Workers, func(worker, block int) (result, error) {
 			from := block * itemRows
 			return evaluators[worker].evaluate(from, min(from+itemRows, len(k.items))), nil

@@ -68,6 +68,10 @@ func OfAnalysis(m *manifests.Manifest, a *Analysis) []Finding {
 	return out
 }
 
+// endMemberSetAside is how far a sum of fractions may lie from 1 and be used
+// (common practice, no source).
+const endMemberSetAside = 0.1
+
 func endMemberSum(tol float64, a *Analysis) []Finding {
 	if a.Composition.Kind != chem.EndMember {
 		return nil
@@ -75,6 +79,14 @@ func endMemberSum(tol float64, a *Analysis) []Finding {
 	if a.EndMemberSum <= 0 {
 		return []Finding{{Rule: "end-member sum", Effect: SetAside, Value: number(a.EndMemberSum), Limit: "above 0",
 			Detail: "end-member fractions sum to " + text(a.EndMemberSum, 4)}}
+	}
+	// Percent, mixed units or a misread column: renormalising would hide it.
+	if math.Abs(a.EndMemberSum-1) > endMemberSetAside+eps {
+		detail := "end-member fractions sum to " + text(a.EndMemberSum, 4)
+		if math.Abs(a.EndMemberSum-100) < 10 {
+			detail += ": percent, or other units than fractions"
+		}
+		return []Finding{{Rule: "end-member sum", Effect: SetAside, Value: number(a.EndMemberSum), Limit: "1 +- " + text(endMemberSetAside, 2), Detail: detail}}
 	}
 	// A sum printed as .998 is off by .002, not by the .0020000000000000018 of binary fractions.
 	if math.Abs(a.EndMemberSum-1) <= tol+eps {
@@ -85,14 +97,21 @@ func endMemberSum(tol float64, a *Analysis) []Finding {
 }
 
 func components(a *Analysis) []Finding {
-	if a.Composition.Kind != chem.OxideWt {
-		return nil
-	}
 	role := a.Phase.Role()
 	var out []Finding
-	if gone := unmeasured(a.Composition, majors[role]); gone != "" {
+	gone := unmeasured(a.Composition, majors[role])
+	switch a.Composition.Kind {
+	case chem.Apfu:
+		gone = unknownCations(a.Composition, majors[role])
+	case chem.EndMember:
+		gone = unknownEndMembers(a.Composition, role)
+	}
+	if gone != "" {
 		out = append(out, Finding{Rule: "major component not measured", Effect: Flagged, Limit: "measured",
 			Detail: gone + " not measured: methods that need it give no number"})
+	}
+	if a.Composition.Kind != chem.OxideWt {
+		return out
 	}
 	if gone := unmeasured(a.Composition, minors[role]); gone != "" {
 		out = append(out, Finding{Rule: "minor component not measured", Effect: Flagged, Limit: "measured",
@@ -104,10 +123,35 @@ func components(a *Analysis) []Finding {
 	return out
 }
 
+// unknownCations lists, joined, the cations of oxides that were not determined.
+func unknownCations(c *chem.Composition, oxides []chem.Oxide) string {
+	var gone []string
+	for _, o := range oxides {
+		if cation := chem.Oxides[o].Cation; !formula.Determined(c, cation) {
+			gone = append(gone, cation.String())
+		}
+	}
+	return strings.Join(gone, ", ")
+}
+
+// unknownEndMembers lists, joined, the end members a feldspar lacks.
+func unknownEndMembers(c *chem.Composition, role chem.Phase) string {
+	if role != chem.Afs && role != chem.Pl {
+		return ""
+	}
+	var gone []string
+	for _, m := range []chem.Measurand{chem.XAb, chem.XOr, chem.XAn} {
+		if !known(c, m) {
+			gone = append(gone, m.String())
+		}
+	}
+	return strings.Join(gone, ", ")
+}
+
 // bariumUnknown says that BaO was not analysed, and flags it where the A site
 // and Al leave room for celsian (BaAl2Si2O8 takes K's place and one Si's).
 func bariumUnknown(a *Analysis) Finding {
-	f := Finding{Rule: "BaO not measured", Effect: Noted, Limit: "A site 0.98, Al - 1 - Ca 0.02", Detail: "BaO not measured; nothing in the formula asks for it"}
+	f := Finding{Rule: "BaO not measured", Effect: Noted, Limit: "A site 0.98, Al - 1 - Ca 0.02", Detail: "BaO not measured; A site and Al leave no room for celsian"}
 	if a.Formula.Why != method.OK {
 		return f
 	}
@@ -141,7 +185,14 @@ func known(c *chem.Composition, m chem.Measurand) bool {
 }
 
 func ironTwice(a *Analysis) []Finding {
+	if asFeO, asFe2O3, both, differ := formula.TotalsDiffer(a.Composition); both && differ {
+		return []Finding{{Rule: "iron listed twice", Effect: Flagged, Value: number(asFe2O3), Limit: text(asFeO, 3) + " wt% FeO total",
+			Detail: fmt.Sprintf("iron total of %s wt%% FeO stands beside one of Fe2O3 that holds %s; the first was used", text(asFeO, 2), text(asFe2O3, 2))}}
+	}
 	total, parts, twice, agrees := formula.IronTwice(a.Composition)
+	if a.Composition.Kind == chem.Apfu {
+		return ironTwiceApfu(a.Composition)
+	}
 	if !twice {
 		return nil
 	}
@@ -154,12 +205,42 @@ func ironTwice(a *Analysis) []Finding {
 	return []Finding{f}
 }
 
+// ironTwiceApfu is ironTwice for cations.
+func ironTwiceApfu(c *chem.Composition) []Finding {
+	total, parts, twice, agrees := formula.IronTwiceApfu(c)
+	if !twice {
+		return nil
+	}
+	f := Finding{Rule: "iron listed twice", Effect: Noted, Value: number(parts), Limit: text(total, 4) + " apfu Fe",
+		Detail: "Fe stands beside Fe2 and Fe3; iron was counted once"}
+	if !agrees {
+		f.Effect = Flagged
+		f.Detail = fmt.Sprintf("Fe of %s apfu stands beside Fe2 and Fe3 that sum to %s; Fe was used", text(total, 3), text(parts, 3))
+	}
+	return []Finding{f}
+}
+
+// Below these an amount is no background noise (common practice, no source).
+const (
+	negativeWt       = -0.1  // wt%
+	negativeFraction = -0.01 // apfu and mole fraction
+)
+
 func negative(a *Analysis) []Finding {
 	var out []Finding
 	for m := chem.Measurand(0); m < chem.NumMeasurands; m++ {
 		if a.Composition.State[m] == chem.Measured && a.Composition.Value[m] < 0 {
-			out = append(out, Finding{Rule: "negative amount", Effect: Flagged, Value: number(a.Composition.Value[m]), Limit: "0",
-				Detail: m.String() + " is negative (" + text(a.Composition.Value[m], 4) + ") and was used as given"})
+			f := Finding{Rule: "negative amount", Effect: Flagged, Value: number(a.Composition.Value[m]), Limit: "0",
+				Detail: m.String() + " is negative (" + text(a.Composition.Value[m], 4) + ") and was used as given"}
+			least := negativeWt
+			if m.Kind() != chem.OxideWt {
+				least = negativeFraction
+			}
+			if a.Composition.Value[m] < least-eps {
+				f.Effect, f.Limit = SetAside, text(least, 2)
+				f.Detail = m.String() + " is negative (" + text(a.Composition.Value[m], 4) + "), more than a background explains"
+			}
+			out = append(out, f)
 		}
 	}
 	return out

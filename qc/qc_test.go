@@ -69,6 +69,9 @@ func TestAnalysisRules(t *testing.T) {
 	cn := func(v float64) func(*Analysis) { return func(a *Analysis) { a.Celsian = v } }
 	sum := func(v float64) func(*Analysis) {
 		return func(a *Analysis) {
+			for _, m := range []chem.Measurand{chem.XAb, chem.XOr, chem.XAn} {
+				a.Composition.State[m] = chem.Measured
+			}
 			a.Composition.Kind, a.EndMemberSum = chem.EndMember, v
 			a.Formula.Why = method.NoFormula
 		}

@@ -120,6 +120,8 @@ var mantleOnly = &method.Info{Range: method.Range{Setting: "mantle peridotite"}}
 var ruleCases = []ruleCase{
 	{"passed over", SetAside, one("", func(a *Analysis) { a.SetAside = "glass" }), one("", nil)},
 	{"end-member sum", Flagged, one(chem.Afs, fractions(0.9979)), one(chem.Afs, fractions(0.998))},
+	{"end-member sum", SetAside, one(chem.Afs, fractions(1.101)), one(chem.Afs, fractions(1.1))},
+	{"negative amount", SetAside, one(chem.Cpx, oxide(chem.K2O, -0.101)), one(chem.Cpx, oxide(chem.K2O, -0.1))},
 	{"major component not measured", Flagged, one(chem.Cpx, gone(chem.Na2O)), one(chem.Opx, gone(chem.Na2O))},
 	{"minor component not measured", Flagged, one(chem.Opx, gone(chem.K2O)), one(chem.Opx, gone(chem.BaO))},
 	{"BaO not measured", Noted, one(chem.Afs, gone(chem.BaO)), one(chem.Afs, gone(chem.SrO))},

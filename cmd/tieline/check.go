@@ -35,7 +35,11 @@ prints what each column was taken for, with counts. Problems come all at once.`,
 				}
 				return err
 			}
-			printCheck(cmd.OutOrStdout(), c)
+			var text strings.Builder
+			printCheck(&text, c, err != nil)
+			if _, writeErr := io.WriteString(cmd.OutOrStdout(), text.String()); writeErr != nil {
+				return writeErr
+			}
 			return err
 		}),
 	}
@@ -43,10 +47,14 @@ prints what each column was taken for, with counts. Problems come all at once.`,
 	return cmd
 }
 
-func printCheck(w io.Writer, c *pipeline.Check) {
+func printCheck(w io.Writer, c *pipeline.Check, stopped bool) {
 	fmt.Fprintf(w, "%s\n", problem.Clean(c.Title))
 	for i := range c.Sources {
 		printSource(w, &c.Sources[i])
+	}
+	if stopped {
+		fmt.Fprintln(w, "\nAnalyses and pairs were not counted, since there are problems.")
+		return
 	}
 	fmt.Fprintf(w, "\n%d analyses", c.Analyses)
 	for _, k := range pairing.Kinds {

@@ -9,9 +9,11 @@ import (
 	"io"
 	"os"
 	"runtime/debug"
+	"strings"
 
 	"github.com/spf13/cobra"
 
+	"tieline/pipeline"
 	"tieline/pipeline/problem"
 )
 
@@ -55,7 +57,9 @@ func execute(args []string, stdout, stderr io.Writer) int {
 func explain(w io.Writer, err error) {
 	var list *problem.List
 	if !errors.As(err, &list) {
-		fmt.Fprintf(w, "tieline: %v\n", err)
+		for _, line := range strings.Split(err.Error(), "\n") {
+			fmt.Fprintf(w, "tieline: %s\n", problem.CleanAll(line))
+		}
 		return
 	}
 	for _, line := range list.Lines() {
@@ -80,6 +84,7 @@ The same inputs give the same bytes.`,
 		Example: `  tieline check manifests/demo     # what the files hold, and what would stop a run
   tieline run manifests/demo       # the result goes to out/demo
   tieline methods                  # the calibrations, with range and source`,
+		Version:       pipeline.Version,
 		SilenceUsage:  true,
 		SilenceErrors: true,
 	}

@@ -6,6 +6,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"tieline/pipeline"
+	"tieline/pipeline/problem"
 )
 
 func runCommand() *cobra.Command {
@@ -22,6 +23,12 @@ whole or not at all. A result that is there from an earlier run is replaced.`,
   tieline run terrane/compilation.toml --out results/terrane --replace
   tieline run manifests/demo --json > record.json`,
 		Args: cobra.ExactArgs(1),
+		PreRunE: func(*cobra.Command, []string) error {
+			if workers < 0 {
+				return fmt.Errorf("--workers %d: give how many blocks are worked at once, or 0 for one per processor", workers)
+			}
+			return nil
+		},
 		RunE: work(func(cmd *cobra.Command, args []string) error {
 			bar := newProgress(cmd.ErrOrStderr())
 			r, err := pipeline.Run(args[0], pipeline.Options{Out: out, Replace: replace, Workers: workers, Progress: bar.show})
@@ -30,7 +37,7 @@ whole or not at all. A result that is there from an earlier run is replaced.`,
 				return err
 			}
 			fmt.Fprint(cmd.ErrOrStderr(), r.Summary.Text())
-			fmt.Fprintf(cmd.ErrOrStderr(), "\nThe result is in %s: tables/*.parquet, record.json, run.log\n", r.Folder)
+			fmt.Fprintf(cmd.ErrOrStderr(), "\nThe result is in %s: tables/*.parquet, record.json, run.log\n", problem.CleanAll(r.Folder))
 			if !asJSON {
 				return nil
 			}

@@ -11,8 +11,11 @@ import (
 	"os"
 	"path/filepath"
 	"slices"
+	"syscall"
 
 	"github.com/gofrs/flock"
+
+	"tieline/pipeline/problem"
 )
 
 // Policy says what may be replaced.
@@ -69,10 +72,18 @@ func Open(target string, replace Policy) (*Folder, error) {
 	for _, step := range []func() error{f.clear, f.allowed, f.stage} {
 		if err := step(); err != nil {
 			f.Abandon()
-			return nil, fmt.Errorf("result folder %s: %w", target, err)
+			return nil, fmt.Errorf("result folder %s: %w", target, inWords(err))
 		}
 	}
 	return f, nil
+}
+
+// inWords says what to do about a full disk.
+func inWords(err error) error {
+	if errors.Is(err, syscall.ENOSPC) || errors.Is(err, syscall.EDQUOT) {
+		return fmt.Errorf("the disk is full: %w; make room, or write elsewhere with --out", err)
+	}
+	return err
 }
 
 // Path is the folder to write to. It is empty at first.
@@ -166,6 +177,32 @@ func removeAll(path string) error {
 }
 
 // allowed says why there may be no result at target, or nil.
+// ours are the names a run leaves in its folder.
+var ours = []string{"record.json", "run.log", "tables"}
+
+// onlyOurs refuses to replace a result that somebody put something into.
+func (f *Folder) onlyOurs(entries []fs.DirEntry) error {
+	tables, err := os.ReadDir(filepath.Join(f.target, "tables"))
+	if err != nil && !errors.Is(err, fs.ErrNotExist) {
+		return err
+	}
+	for _, e := range entries {
+		if !slices.Contains(ours, e.Name()) {
+			return foreign(e.Name())
+		}
+	}
+	for _, e := range tables {
+		if e.IsDir() || filepath.Ext(e.Name()) != ".parquet" {
+			return foreign("tables/" + e.Name())
+		}
+	}
+	return nil
+}
+
+func foreign(name string) error {
+	return fmt.Errorf("it holds %s, which no run of tieline left there and replacing would delete; move it", problem.Quote(name))
+}
+
 func (f *Folder) allowed() error {
 	info, err := os.Lstat(f.target)
 	switch {
@@ -184,8 +221,10 @@ func (f *Folder) allowed() error {
 	switch {
 	case err != nil:
 		return err
-	case len(entries) == 0 || madeByTieline(f.target):
+	case len(entries) == 0:
 		return nil
+	case madeByTieline(f.target):
+		return f.onlyOurs(entries)
 	case f.policy == ReplaceDefault:
 		return errors.New("it exists and holds no result of tieline (no record.json made by tieline); move it, or name another folder with --out")
 	}

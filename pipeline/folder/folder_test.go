@@ -118,13 +118,29 @@ func TestAbandonKeepsTheOlderResultAndNeighbours(t *testing.T) {
 	wantTree(t, dir, before)
 }
 
+// A result that somebody put something into is no longer ours alone.
+func TestReplaceKeepsWhatNoRunLeft(t *testing.T) {
+	for _, foreign := range []string{"notes.txt", "tables/notes.txt", "tables/sub/x.parquet"} {
+		dir := t.TempDir()
+		target := filepath.Join(dir, "demo")
+		result(t, target, ReplaceDefault, "old")
+		put(t, filepath.Join(target, filepath.FromSlash(foreign)), "mine")
+		before := tree(t, dir)
+		if f, err := Open(target, ReplaceDefault); err == nil {
+			f.Abandon()
+			t.Errorf("a result that holds %s may be replaced", foreign)
+		}
+		wantTree(t, dir, before)
+	}
+}
+
 func TestReplace(t *testing.T) {
 	for name, p := range map[string]Policy{"default": ReplaceDefault, "--replace": Replace} {
 		t.Run(name, func(t *testing.T) {
 			dir := t.TempDir()
 			target := filepath.Join(dir, "demo")
 			result(t, target, p, "old")
-			put(t, filepath.Join(target, "figures", "old.svg"), "gone with it")
+			put(t, filepath.Join(target, "tables", "old.parquet"), "gone with it")
 			result(t, target, p, "new")
 			wantTree(t, dir, "demo/ demo/record.json="+record+" demo/tables/ demo/tables/a.parquet=new")
 		})

@@ -40,6 +40,14 @@ func TotalsDiffer(c *chem.Composition) (asFeO, asFe2O3 float64, both, differ boo
 	return asFeO, asFe2O3, both, both && !agree(asFeO, asFe2O3, agreeWt)
 }
 
+// IronTwiceApfu is IronTwice for cations, apfu.
+func IronTwiceApfu(c *chem.Composition) (total, parts float64, twice, agrees bool) {
+	fe2, fe3 := chem.MeasurandOfCation(chem.Fe2), chem.MeasurandOfCation(chem.Fe3)
+	total, parts = c.Amount(chem.FeT), c.Amount(fe2)+c.Amount(fe3)
+	twice = c.State[chem.FeT] == chem.Measured && (c.State[fe2] == chem.Measured || c.State[fe3] == chem.Measured)
+	return total, parts, twice, twice && agree(total, parts, agreeApfu)
+}
+
 // IronTwice says whether c lists iron as a total beside FeO or Fe2O3, and gives
 // both as wt% FeO. A total that agrees with its parts is counted once, as the
 // parts; one that does not is taken for all the iron there is, as FeO.
