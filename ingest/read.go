@@ -45,7 +45,7 @@ type Column struct {
 
 // Read reads every source of a manifest, in its order, from files below root.
 // The problems of all sources come together, and are never nil; rows with
-// problems are not among the analyses. advance may be nil; it is told now and
+// problems of their own are not among the analyses. advance may be nil; it is told now and
 // then how many rows have been read in all.
 func Read(root *os.Root, m *manifests.Manifest, advance func(rows int)) (*tables.Analyses, []Source, *problem.List) {
 	all, problems := &tables.Analyses{}, &problem.List{}
@@ -128,21 +128,12 @@ func (r *reader) header(rows *rows) *plan {
 	for _, p := range problems {
 		r.add(p)
 	}
-	rows.header, rows.named = len(cells), lastNamed(cells)
+	rows.head(cells)
 	r.out.Columns = plan.reports
 	if fatal {
 		return nil
 	}
 	return plan
-}
-
-func lastNamed(cells []string) int {
-	for i, c := range slices.Backward(cells) {
-		if trim(c) != "" {
-			return i + 1
-		}
-	}
-	return 0
 }
 
 // step is how many rows pass between two calls of advance.
@@ -169,6 +160,9 @@ func (r *reader) rows(rows *rows, a *analyses, to *gatherer) (whole bool) {
 }
 
 func (r *reader) row(cells []string, rows *rows, a *analyses, to *gatherer) {
+	for _, p := range rows.nameless(cells) {
+		r.add(p)
+	}
 	one := a.read(cells, rows)
 	for _, p := range a.problems {
 		r.add(p)

@@ -6,6 +6,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"slices"
 	"strings"
 
 	"tieline/pipeline/problem"
@@ -17,8 +18,9 @@ type rows struct {
 	text   *decoded
 	guard  *guard
 	csv    *csv.Reader
-	header int // cells of the header, 0 before it is read
-	named  int // cells of the header up to the last that is not empty
+	header int   // cells of the header, 0 before it is read
+	named  int   // cells of the header up to the last that is not empty
+	empty  []int // cells of the header that are empty before that, till they are reported
 
 	line  int // where the row last read begins
 	end   int // the last line read
@@ -32,6 +34,20 @@ func newRows(text *decoded, sep byte) *rows {
 	r.FieldsPerRecord = -1
 	r.ReuseRecord = true
 	return &rows{text: text, guard: g, csv: r}
+}
+
+// head takes the header's width and its empty cells, which the rows are held to.
+func (r *rows) head(cells []string) {
+	r.header, r.named = len(cells), 0
+	for i, c := range slices.Backward(cells) {
+		switch empty := trim(c) == ""; {
+		case !empty && r.named == 0:
+			r.named = i + 1
+		case empty && r.named > 0:
+			r.empty = append(r.empty, i)
+		}
+	}
+	slices.Reverse(r.empty)
 }
 
 // next gives the next row's cells, which are good until the call after. A
@@ -120,6 +136,23 @@ func (r *rows) unnamed(cells []string) *problem.Problem {
 		}
 	}
 	return nil
+}
+
+// nameless finds values of a row below an empty cell of the header. Each column
+// is reported once: it is the header that is wrong, not the row.
+func (r *rows) nameless(cells []string) (problems []problem.Problem) {
+	for i := 0; i < len(r.empty); {
+		at := r.empty[i]
+		if trim(cells[at]) == "" {
+			i++
+			continue
+		}
+		r.empty = slices.Delete(r.empty, i, i+1)
+		problems = append(problems, problem.Problem{Line: r.lineOf(at), Column: at + 1, Kind: "header",
+			Found:    fmt.Sprintf("column %d has values, such as %s, and no header", at+1, problem.Quote(cells[at])),
+			Expected: "a header above every value", Do: "name the column or remove it"})
+	}
+	return problems
 }
 
 func (r *rows) undecodable(i int, cell string) *problem.Problem {

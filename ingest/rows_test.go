@@ -106,3 +106,17 @@ func TestEveryLineIsAccountedFor(t *testing.T) {
 		}
 	})
 }
+
+// Values below an empty header are seen, once for each column, and the rows are
+// looked over all the same; an empty column between named ones is nothing.
+func TestValuesWithoutHeader(t *testing.T) {
+	_, _, problems := readText(t, "", ",Sample,,Mineral, ,SiO2\n,R1,,Pl,7,60\n1,R2,,Pl,8,sixty\n2,R3,,Pl,,61\n")
+	same(t, "values without a header", problems.Lines(), []string{
+		`t.csv:2:5: column 5 has values, such as "7", and no header; expected a header above every value; name the column or remove it`,
+		`t.csv:3:1: column 1 has values, such as "1", and no header; expected a header above every value; name the column or remove it`,
+		`t.csv:3:6 (SiO2): "sixty" is no number; expected a number with a decimal point; list the text in not_analysed, below_detection or missing if it means one of these`,
+	})
+	if all := mustRead(t, "", "Sample,,Mineral,SiO2\nR1,,Pl,60\n"); all.Len() != 1 {
+		t.Errorf("an empty column between named ones leaves %d analyses of 1", all.Len())
+	}
+}
