@@ -12,8 +12,8 @@ import (
 	"pgregory.net/rapid"
 )
 
-// transcript is all that reading a text row by row says.
-func transcript(text string, wrap func(io.Reader) io.Reader) (out []string) {
+// saidOf is all that reading a text row by row says.
+func saidOf(text string, wrap func(io.Reader) io.Reader) (out []string) {
 	d, p := decode(wrap(strings.NewReader(text)), "utf-8")
 	if p != nil {
 		return []string{p.String()}
@@ -41,9 +41,9 @@ var messy = rapid.Custom(func(t *rapid.T) string {
 func TestRowsDoNotDependOnChunks(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		text := messy.Draw(t, "text")
-		want := strings.Join(transcript(text, func(r io.Reader) io.Reader { return r }), "\n")
+		want := strings.Join(saidOf(text, func(r io.Reader) io.Reader { return r }), "\n")
 		for _, wrap := range []func(io.Reader) io.Reader{iotest.OneByteReader, iotest.HalfReader, iotest.DataErrReader} {
-			if got := strings.Join(transcript(text, wrap), "\n"); got != want {
+			if got := strings.Join(saidOf(text, wrap), "\n"); got != want {
 				t.Fatalf("%q in other pieces reads\n%s\nwant\n%s", text, got, want)
 			}
 		}
