@@ -80,18 +80,23 @@ type phaseReading struct {
 // phaseReader reads the phase cells of one source. What it has read it
 // remembers: a column of a million rows holds a few texts.
 type phaseReader struct {
-	mapped   map[string]chem.Phase // by name, the manifest's
-	passOver map[string]bool       // by name without case
+	mapped   map[string]chem.Phase // by folded name, the manifest's
+	passOver map[string]bool       // by folded name
 	read     map[string]phaseReading
+	matched  map[string]bool // folded names of mapped and passOver that some row had
 }
 
+// foldName is a text as the manifest's phases and pass_over are compared: by
+// name, without case.
+func foldName(text string) string { return strings.ToLower(name(text)) }
+
 func newPhaseReader(s *manifests.Source) *phaseReader {
-	r := &phaseReader{mapped: map[string]chem.Phase{}, passOver: map[string]bool{}, read: map[string]phaseReading{}}
+	r := &phaseReader{mapped: map[string]chem.Phase{}, passOver: map[string]bool{}, read: map[string]phaseReading{}, matched: map[string]bool{}}
 	for _, text := range slices.Sorted(maps.Keys(s.Phases)) {
-		r.mapped[name(text)] = s.Phases[text]
+		r.mapped[foldName(text)] = s.Phases[text]
 	}
 	for _, text := range s.PassOver {
-		r.passOver[strings.ToLower(name(text))] = true
+		r.passOver[foldName(text)] = true
 	}
 	return r
 }
@@ -113,14 +118,33 @@ func (r *phaseReader) of(text string) phaseReading {
 // work reads a phase: the manifest's mapping beats the vocabulary, and passing
 // over beats both.
 func (r *phaseReader) work(text string) phaseReading {
-	p, known := r.mapped[text]
+	folded := foldName(text)
+	p, known := r.mapped[folded]
+	if known || r.passOver[folded] {
+		r.matched[folded] = true
+	}
 	if !known {
 		p, known = lookUpPhase(text)
 	}
-	if r.passOver[strings.ToLower(text)] {
+	if r.passOver[folded] {
 		return phaseReading{phase: p, setAside: "passed over: " + text, known: true}
 	}
 	return phaseReading{phase: p, known: known}
+}
+
+// unmatched are the entries of phases and pass_over that no row had.
+func (r *phaseReader) unmatched(s *manifests.Source) (out []string) {
+	for _, text := range slices.Sorted(maps.Keys(s.Phases)) {
+		if !r.matched[foldName(text)] {
+			out = append(out, "phases "+problem.Quote(text))
+		}
+	}
+	for _, text := range s.PassOver {
+		if !r.matched[foldName(text)] {
+			out = append(out, "pass_over "+problem.Quote(text))
+		}
+	}
+	return out
 }
 
 // unknown is the problem of a phase nobody knows.

@@ -142,8 +142,11 @@ func newPlan(s *manifests.Source, cells []string, line int, start []byte) (p *pl
 		return p, h.problems, true
 	}
 	headers := h.read(cells)
-	h.alike("columns", slices.Sorted(maps.Keys(s.Columns)), words)
-	h.alike("phases", slices.Sorted(maps.Keys(s.Phases)), name)
+	never := func(string, string) bool { return false }
+	h.alike("columns", slices.Sorted(maps.Keys(s.Columns)), words, never)
+	h.alike("phases", slices.Sorted(maps.Keys(s.Phases)), foldName, func(a, b string) bool {
+		return name(a) != name(b) && s.Phases[a] == s.Phases[b]
+	})
 	h.missingHeaders(headers)
 	h.repeated(headers)
 	h.use(headers)
@@ -194,13 +197,17 @@ func (h *headerReader) read(cells []string) []header {
 }
 
 // alike refuses texts of the manifest that read as one: two headers, or two
-// phases, that differ in spaces or in the width of a letter.
-func (h *headerReader) alike(key string, texts []string, read func(string) string) {
+// phases, that differ in spaces, in the width of a letter or, phases, in case. may
+// says whether two that read as one may do so.
+func (h *headerReader) alike(key string, texts []string, read func(string) string, may func(a, b string) bool) {
 	first := map[string]string{}
 	for _, text := range texts {
 		before, twice := first[read(text)]
 		if !twice {
 			first[read(text)] = text
+			continue
+		}
+		if may(before, text) {
 			continue
 		}
 		h.problem(nil, problem.Problem{Found: problem.Quote(before) + " and " + problem.Quote(text) + " in the manifest's " + key + ", which read alike",

@@ -27,6 +27,9 @@ type Source struct {
 	BlankLines int      `json:"blank_lines"`
 	PassedOver int      `json:"passed_over"` // rows the manifest passes over, which are set aside
 	Columns    []Column `json:"columns"`     // in the file's order
+	// Entries of the manifest's phases and pass_over that no row had: slips, or
+	// left from another file.
+	Unmatched []string `json:"unmatched,omitempty"`
 }
 
 // Column is one column of a source with a header.
@@ -100,6 +103,7 @@ func (r *reader) stream(file io.Reader) []*tables.Batch {
 	}
 	r.out.Columns, r.out.BlankLines = plan.reports, rows.blank
 	if whole {
+		r.out.Unmatched = plan.phases.unmatched(r.source)
 		r.digest(text)
 	}
 	return batches
