@@ -411,6 +411,26 @@ func known(s *manifests.Source, headers []string) int {
 	return n
 }
 
+// composed counts the headers that hold a composition of the source's kind, by
+// the vocabulary or the manifest.
+func composed(s *manifests.Source, headers []string) int {
+	v, n := vocabularyOf[s.Kind()](), 0
+	declared := map[string]manifests.Quantity{}
+	for text, q := range s.Columns {
+		declared[words(text)] = q
+	}
+	for _, h := range headers {
+		q, ok := declared[words(h)]
+		if !ok {
+			q = v.look(h).quantity
+		}
+		if _, _, ok := q.Measurand(); ok {
+			n++
+		}
+	}
+	return n
+}
+
 // separatorAdvice names the separator that makes of the start of a text a header
 // of several columns with the most that are known; "" where none does.
 func separatorAdvice(s *manifests.Source, start []byte) string {

@@ -10,6 +10,7 @@ import (
 	"io"
 	"os"
 	"slices"
+	"strings"
 
 	"tieline/manifests"
 	"tieline/pipeline/problem"
@@ -119,7 +120,13 @@ func (r *reader) header(rows *rows) *plan {
 	case err != nil:
 		r.stop(err)
 		return nil
-	case p != nil:
+	}
+	cells, line := slices.Clone(cells), rows.line // reading on writes over them
+	if later := r.laterHeader(rows, cells); later != nil {
+		r.add(*later)
+		return nil
+	}
+	if p != nil {
 		if do := separatorAdvice(r.source, rows.guard.start); cells == nil && do != "" {
 			p.Kind, p.Do = "separator", do
 		}
@@ -128,7 +135,7 @@ func (r *reader) header(rows *rows) *plan {
 			return nil
 		}
 	}
-	plan, problems, fatal := newPlan(r.source, cells, rows.line, rows.guard.start)
+	plan, problems, fatal := newPlan(r.source, cells, line, rows.guard.start)
 	for _, p := range problems {
 		r.add(p)
 	}
@@ -138,6 +145,51 @@ func (r *reader) header(rows *rows) *plan {
 		return nil
 	}
 	return plan
+}
+
+// lookedAt is how many rows are looked at for a header that is not the first.
+const lookedAt = 10
+
+// laterHeader finds the header below a title, a comment or a line such as
+// "sep=;". It reads on where the first row holds no composition, which no row
+// below can be read without.
+func (r *reader) laterHeader(rows *rows, first []string) *problem.Problem {
+	if composed(r.source, first) > 0 {
+		return nil
+	}
+	line, most := rows.line, known(r.source, first)
+	var found *problem.Problem
+	for range lookedAt {
+		cells, _, err := rows.next()
+		if err != nil {
+			break
+		}
+		n, do := headerLike(r.source, cells)
+		if n > most {
+			most = n
+			found = &problem.Problem{Line: line, Kind: "header", Found: "no header", Expected: "the header above everything else",
+				Do: fmt.Sprintf("line %d looks like the header; remove the lines above it%s", rows.line, do)}
+		}
+	}
+	return found
+}
+
+// headerLike counts the known headers of a row that may be a header, split as
+// the manifest says or else, which do then says, by another separator.
+func headerLike(s *manifests.Source, cells []string) (n int, do string) {
+	// One phase named An or Ab makes no header of a row.
+	if composed(s, cells) > 1 {
+		return known(s, cells), ""
+	}
+	whole := []byte(strings.Join(cells, string(s.Comma())))
+	for _, name := range []string{"comma", "tab", "semicolon"} {
+		other := manifests.Source{Separator: name}
+		split := firstRow(whole, other.Comma())
+		if name != s.Separator && composed(s, split) > 1 {
+			return known(s, split), fmt.Sprintf(" and set separator = %q", name)
+		}
+	}
+	return 0, ""
 }
 
 // step is how many rows pass between two calls of advance.

@@ -120,3 +120,25 @@ func TestValuesWithoutHeader(t *testing.T) {
 		t.Errorf("an empty column between named ones leaves %d analyses of 1", all.Len())
 	}
 }
+
+// A header below other lines is pointed at; nothing else is said of the file.
+func TestHeaderBelowOtherLines(t *testing.T) {
+	const table = "Sample,Mineral,SiO2,CaO\nR1,Pl,60,7\n"
+	semicolons := strings.ReplaceAll(table, ",", ";")
+	says := "no header; expected the header above everything else; line %d looks like the header; remove the lines above it"
+	for _, c := range []struct{ what, keys, text, want string }{
+		{"title", `columns = { "Run" = "label" }`, "Table 1. Feldspars\n\n" + table, "t.csv:1: " + fmt.Sprintf(says, 3)},
+		{"title with a quote", "", "Table 1. \"Feldspars\" of 1987\n" + table, "t.csv:1: " + fmt.Sprintf(says, 2)},
+		{"comments", "", "\n# made by hand\n# Sample, all\n" + table, "t.csv:2: " + fmt.Sprintf(says, 4)},
+		{"sep=", `separator = "semicolon"`, "sep=;\n" + semicolons, "t.csv:1: " + fmt.Sprintf(says, 2)},
+		{"sep=, undeclared", "", "sep=;\n" + semicolons, "t.csv:1: " + fmt.Sprintf(says, 2) + ` and set separator = "semicolon"`},
+		{"mapped headers", `columns = { "silica" = "SiO2", "lime" = "CaO" }`, "Table 1\nSample,Mineral,silica,lime\nR1,Pl,60,7\n", "t.csv:1: " + fmt.Sprintf(says, 2)},
+		{"too far below", "", strings.Repeat("Title\n", lookedAt+1) + table,
+			`t.csv:1: one column only, "Title"; expected headers such as "SiO2", "Al2O3 (wt%)", "FeO*"; map the headers in columns`},
+		{"a phase named as an end member", `composition = "end-member fraction"`, "Sample,Mineral,x\nR1,An,1\n",
+			`t.csv:1: no column is known to hold end-member fraction; expected headers such as "Ab", "XOr", "An"; map the headers in columns`},
+	} {
+		_, _, problems := readText(t, c.keys, c.text)
+		same(t, c.what, problems.Lines(), []string{c.want})
+	}
+}
