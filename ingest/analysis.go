@@ -19,11 +19,12 @@ type analyses struct {
 	one   tables.Analysis
 	enc   *lineage.Encoder
 
-	problems []problem.Problem // of the row last read
+	problems []problem.Problem      // of the row last read
+	full     func(kind string) bool // whether problems of a kind are only counted, and need no words
 }
 
-func newAnalyses(p *plan) *analyses {
-	a := &analyses{plan: p, cells: newCells(p.source), enc: lineage.New(analysisDomain)}
+func newAnalyses(p *plan, full func(kind string) bool) *analyses {
+	a := &analyses{plan: p, full: full, cells: newCells(p.source), enc: lineage.New(analysisDomain)}
 	a.one.Text = p.constants
 	a.one.Phase = p.source.Phase
 	a.one.Composition.Kind = p.kind
@@ -125,6 +126,8 @@ func (a *analyses) phase(cell string) {
 	switch {
 	case text == "":
 		a.problems = append(a.problems, problem.Problem{Kind: "phase", Found: "no phase", Expected: "an IMA symbol or a mineral name", Do: "fill in the cell"})
+	case !r.known && a.full("phase"):
+		a.problems = append(a.problems, problem.Problem{Kind: "phase"})
 	case !r.known:
 		a.problems = append(a.problems, a.plan.phases.unknown(text))
 	}
@@ -139,7 +142,11 @@ func (a *analyses) phase(cell string) {
 func (a *analyses) accept(c *column, cell string, r reading) reading {
 	if r.fault != readable {
 		if a.one.Text[tables.SetAside] == "" {
-			a.problems = append(a.problems, a.cells.problem(cell, r.fault, c.quantity))
+			p := problem.Problem{Kind: "number"}
+			if !a.full(p.Kind) {
+				p = a.cells.problem(cell, r.fault, c.quantity)
+			}
+			a.problems = append(a.problems, p)
 		}
 		r = reading{}
 	}

@@ -230,8 +230,11 @@ func (h *headerReader) missingHeaders(headers []header) {
 		}
 	}
 	slices.Sort(missing)
-	for _, text := range missing {
+	for i, text := range missing {
 		do := "write the header in columns as it stands in the file"
+		if i >= problem.PerKind { // only counted
+			texts = nil
+		}
 		if near := manifests.Nearest(text, texts); near != "" {
 			do = "did you mean " + problem.Quote(near) + "?"
 		}

@@ -97,7 +97,8 @@ func (r *reader) stream(file io.Reader) []*tables.Batch {
 		return nil
 	}
 	to := newGatherer(plan)
-	whole := r.rows(rows, newAnalyses(plan), to)
+	full := func(kind string) bool { return r.problems.Full(r.source.File, kind) }
+	whole := r.rows(rows, newAnalyses(plan, full), to)
 	batches := to.finish()
 	for _, p := range to.problems {
 		r.add(p)

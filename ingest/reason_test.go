@@ -2,8 +2,11 @@ package ingest
 
 import (
 	"fmt"
+	"strings"
 	"testing"
+	"time"
 
+	"tieline/pipeline/problem"
 	"tieline/thermo/chem"
 )
 
@@ -47,4 +50,27 @@ func TestEndMembersThatCancelStayFinite(t *testing.T) {
 			t.Errorf("%s is %g, want %g", m, c.Value[m], want)
 		}
 	}
+}
+
+// Problems past those listed are counted without being worded: 200000 unknown
+// phases and words for numbers are soon read.
+func TestManyFaultsAreReadFast(t *testing.T) {
+	var text strings.Builder
+	text.WriteString("Sample,Mineral,SiO2\n")
+	for i := range 100000 {
+		fmt.Fprintf(&text, "R1,plagioclaze %d,sixty\n", i)
+	}
+	start := time.Now()
+	_, _, problems := readText(t, "", text.String())
+	if took := time.Since(start); took > 10*time.Second {
+		t.Errorf("took %v", took)
+	}
+	lines := problems.Lines()
+	if problems.Len() != 200000 || len(lines) != 2*problem.PerKind+2 {
+		t.Fatalf("%d problems, %d lines; want 200000, and %d of each kind listed", problems.Len(), len(lines), problem.PerKind)
+	}
+	same(t, "the last listed", lines[2*problem.PerKind-1:], []string{
+		`t.csv:21:3 (SiO2): "sixty" is no number; expected a number with a decimal point; list the text in not_analysed, below_detection or missing if it means one of these`,
+		`t.csv: 99980 more of kind "number" not listed`, `t.csv: 99980 more of kind "phase" not listed`,
+	})
 }

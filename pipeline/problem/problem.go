@@ -69,6 +69,12 @@ func (l *List) Add(p Problem) {
 	}
 }
 
+// Full says whether a further problem of a kind in a source would only be
+// counted, so that it needs no words.
+func (l *List) Full(source, kind string) bool {
+	return l.counts[[2]string{source, kind}] >= PerKind
+}
+
 // Merge adds what other holds, counts included.
 func (l *List) Merge(other *List) {
 	kept := map[[2]string]int{}

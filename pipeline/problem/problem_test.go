@@ -175,3 +175,19 @@ func TestErrIsNilForNoProblems(t *testing.T) {
 		t.Errorf("one problem is the error %v", err)
 	}
 }
+
+// Full begins where the next problem of a kind would only be counted.
+func TestFull(t *testing.T) {
+	var l List
+	for i := range PerKind {
+		if l.Full("a.csv", "number") {
+			t.Fatalf("full with %d problems, want %d", i, PerKind)
+		}
+		l.Add(Problem{Source: "a.csv", Kind: "number"})
+	}
+	for k, want := range map[[2]string]bool{{"a.csv", "number"}: true, {"a.csv", "phase"}: false, {"b.csv", "number"}: false} {
+		if got := l.Full(k[0], k[1]); got != want {
+			t.Errorf("Full(%q, %q) is %v, want %v", k[0], k[1], got, want)
+		}
+	}
+}
