@@ -2,10 +2,11 @@ package ingest
 
 import (
 	"strings"
-	"unicode"
 	"unicode/utf8"
 
 	"golang.org/x/text/unicode/norm"
+
+	"tieline/manifests"
 )
 
 // replacement is what decoding leaves of bytes that mean nothing.
@@ -22,13 +23,8 @@ func trim(s string) string {
 
 func visibleASCII(c byte) bool { return c > ' ' && c < 0x7f }
 
-func blank(r rune) bool {
-	switch r {
-	case '\u200b', '\u200e', '\u200f', '\u2060', '\ufeff': // zero width
-		return true
-	}
-	return unicode.IsSpace(r)
-}
+// blank is as the manifest's own texts are trimmed.
+func blank(r rune) bool { return manifests.Blank(r) }
 
 // name is a text cell as rows are matched by it: trimmed, in Unicode's composed
 // form (NFC), its case kept.

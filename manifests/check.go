@@ -9,6 +9,7 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+	"unicode"
 
 	"tieline/pipeline/problem"
 	"tieline/thermo/chem"
@@ -16,6 +17,7 @@ import (
 
 // check reports what no schema can say.
 func (r *reader) check(m *Manifest) {
+	r.visible("compilation.title", m.Compilation.Title, "write the title")
 	r.sources(m)
 	r.within("qc.totals_kept_wt", m.QC.TotalsKeptWt, "qc.totals_flagged_wt", m.QC.TotalsFlaggedWt)
 	r.within("qc.pyroxene_sum_kept", m.QC.PyroxeneSumKept, "qc.pyroxene_sum_flagged", m.QC.PyroxeneSumFlagged)
@@ -205,6 +207,7 @@ func (r *reader) sources(m *Manifest) {
 		for _, text := range sortedKeys(s.Phases) {
 			r.phase(s.Phases[text], p+".phases."+strconv.Quote(text))
 		}
+		r.constants(s, p)
 		r.columns(s, p)
 		r.markers(s, p)
 	}
@@ -281,6 +284,35 @@ func (r *reader) phase(symbol chem.Phase, p string) {
 	r.complain(p, r.at[p], "phase", "an IMA symbol such as Afs, Pl, Opx, Cpx", problem.Quote(string(symbol)), do)
 }
 
+// Blank says whether a character is trimmed off the ends of a text: spaces,
+// no-break spaces among them, and those nobody sees.
+func Blank(c rune) bool {
+	switch c {
+	case '\u200b', '\u200e', '\u200f', '\u2060', '\ufeff': // zero width
+		return true
+	}
+	return unicode.IsSpace(c)
+}
+
+func trim(s string) string { return strings.TrimFunc(s, Blank) }
+
+// constants refuses a text for every row that leaves nothing once it is trimmed.
+func (r *reader) constants(s *Source, p string) {
+	for _, c := range []struct{ key, text string }{
+		{"sample", s.Sample}, {"texture", s.Texture}, {"locality", s.Locality}, {"unit", s.Unit}, {"analysis_kind", s.AnalysisKind},
+		{"generation", s.Generation}, {"published_method", s.PublishedMethod}, {"setting", s.Setting},
+	} {
+		r.visible(p+"."+c.key, c.text, "write the text or leave the key out")
+	}
+}
+
+// visible refuses a text of blanks only.
+func (r *reader) visible(p, text, do string) {
+	if text != "" && trim(text) == "" && !r.bad[p] {
+		r.complain(p, r.at[p], "value", "some text", problem.Quote(text)+", blanks only", do)
+	}
+}
+
 // columns refuses composition columns of another kind than the source's.
 func (r *reader) columns(s *Source, p string) {
 	if r.bad[p+".composition"] {
@@ -305,7 +337,7 @@ func (r *reader) markers(s *Source, p string) {
 	for _, l := range lists {
 		lp := p + "." + l.name
 		for i, text := range l.texts {
-			folded := strings.ToLower(strings.TrimSpace(text))
+			folded := strings.ToLower(trim(text))
 			if folded == "" {
 				continue
 			}
@@ -322,7 +354,7 @@ func (r *reader) markers(s *Source, p string) {
 				seen[folded] = l.name
 			}
 		}
-		if l.name != "missing" && slices.ContainsFunc(l.texts, func(t string) bool { return strings.TrimSpace(t) == "" }) {
+		if l.name != "missing" && slices.ContainsFunc(l.texts, func(t string) bool { return trim(t) == "" }) {
 			r.complain(lp, r.at[lp], "value", "cell texts that are not empty", "an empty text", "an empty cell always counts as missing")
 		}
 	}
