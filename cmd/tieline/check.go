@@ -69,6 +69,9 @@ func printSource(w io.Writer, s *ingest.Source) {
 	if s.PassedOver > 0 {
 		fmt.Fprintf(w, "  %d rows are passed over by the manifest and will be set aside\n", s.PassedOver)
 	}
+	if len(s.Unmatched) > 0 {
+		fmt.Fprintf(w, "  entries of the manifest that no row matched: %s\n", strings.Join(s.Unmatched, ", "))
+	}
 	fmt.Fprintf(w, "  %-28s %-18s %8s %10s %10s %8s %8s %8s\n", "column", "taken for", "numbers", "lowest", "highest", "missing", "not an.", "below d.")
 	columns := slices.Clone(s.Columns)
 	for _, c := range columns {
