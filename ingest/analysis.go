@@ -104,6 +104,9 @@ func (a *analyses) text(c *column, cell string) {
 			a.problems = append(a.problems, problem.Problem{Kind: "published kind", Found: problem.Quote(cell), Expected: "experiment, thermometer or estimate"})
 		}
 	}
+	if c.quantity == manifests.Texture {
+		text = textureOf(text)
+	}
 	a.one.Text[c.use.text] = text
 	if text == "" {
 		a.plan.reports[c.report].Missing++

@@ -313,6 +313,9 @@ func (h *headerReader) constants(headers []header) {
 		i := slices.IndexFunc(p.columns, func(used column) bool { return used.quantity == c.quantity })
 		if i < 0 {
 			p.constants[useOf(c.quantity).text] = name(c.value)
+			if c.quantity == manifests.Texture {
+				p.constants[tables.Texture] = textureOf(name(c.value))
+			}
 			continue
 		}
 		at := headers[slices.IndexFunc(headers, func(one header) bool { return one.at == p.columns[i].at })]

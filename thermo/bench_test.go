@@ -3,6 +3,7 @@ package thermo
 import (
 	"fmt"
 	"math"
+	"sync"
 	"testing"
 
 	"tieline/thermo/chem"
@@ -33,8 +34,8 @@ func BenchmarkMethods(b *testing.B) {
 	}
 }
 
-// A million pairs of each kind through every method, in blocks and plainly, one
-// core. What several methods read is filled once in a block.
+// A million pairs of each kind through every method, in blocks and plainly, on
+// one core and on two. What several methods read is filled once in a block.
 func BenchmarkMillion(b *testing.B) {
 	const distinct = 16 // blocks, gone through again and again
 	ms := Methods()
@@ -51,26 +52,46 @@ func BenchmarkMillion(b *testing.B) {
 		data = append(data, probeBlock{p, values, why})
 		rows = append(rows, plainRows(p, values))
 	}
-	b.Run(fmt.Sprintf("%d methods, %d components/block", len(ms), components), func(b *testing.B) {
-		evaluateBlocks(b, ms, data, blocks, estimates)
-	})
-	b.Run(fmt.Sprintf("%d methods, %d components/plain", len(ms), components), func(b *testing.B) {
-		var equations []equation
-		for _, m := range ms {
-			equations = append(equations, plainly(m))
-		}
-		for b.Loop() {
-			for i := range blocks {
-				of := rows[i%distinct]
-				for _, f := range equations {
-					for j := range of {
-						sink += f(&of[j])[0]
+	for _, cores := range []int{1, 2} {
+		name := fmt.Sprintf("%d methods, %d components, %d cores/", len(ms), components, cores)
+		b.Run(name+"block", func(b *testing.B) {
+			share(cores, func(core int) { evaluateShare(b, ms, data, blocks/cores) })
+			perEstimate(b, estimates)
+		})
+		b.Run(name+"plain", func(b *testing.B) {
+			share(cores, func(core int) {
+				sum := 0.0
+				var equations []equation
+				for _, m := range ms {
+					equations = append(equations, plainly(m))
+				}
+				for range b.N {
+					for i := range blocks / cores {
+						of := rows[i%distinct]
+						for _, f := range equations {
+							for j := range of {
+								sum += f(&of[j])[0]
+							}
+						}
 					}
 				}
-			}
-		}
-		perEstimate(b, estimates)
-	})
+				sinks[core] = sum
+			})
+			perEstimate(b, estimates)
+		})
+	}
+}
+
+// sinks keep the compiler from dropping what is computed, a place per core.
+var sinks [2]float64
+
+// share runs f on so many goroutines and waits.
+func share(cores int, f func(core int)) {
+	var wg sync.WaitGroup
+	for core := range cores {
+		wg.Go(func() { f(core) })
+	}
+	wg.Wait()
 }
 
 const blockRows = 1024
@@ -86,6 +107,13 @@ type probeBlock struct {
 
 // evaluateBlocks fills and evaluates so many blocks per turn.
 func evaluateBlocks(b *testing.B, ms []*method.Method, data []probeBlock, blocks int, estimates float64) {
+	b.ReportAllocs()
+	evaluateShare(b, ms, data, blocks)
+	perEstimate(b, estimates)
+}
+
+// evaluateShare does one core's blocks b.N times.
+func evaluateShare(b *testing.B, ms []*method.Method, data []probeBlock, blocks int) {
 	block := method.NewBlock(blockRows)
 	var lanes [][]method.Lane
 	var needs []*method.Quantity
@@ -94,8 +122,7 @@ func evaluateBlocks(b *testing.B, ms []*method.Method, data []probeBlock, blocks
 		needs = append(needs, m.Needs...)
 	}
 	leaves := method.Leaves(needs)
-	b.ReportAllocs()
-	for b.Loop() {
+	for range b.N {
 		for i := range blocks {
 			d := &data[i%len(data)]
 			block.Reset(blockRows)
@@ -110,7 +137,6 @@ func evaluateBlocks(b *testing.B, ms []*method.Method, data []probeBlock, blocks
 			}
 		}
 	}
-	perEstimate(b, estimates)
 }
 
 func perEstimate(b *testing.B, estimates float64) {
