@@ -422,8 +422,8 @@ func known(s *manifests.Source, headers []string) int {
 func composed(s *manifests.Source, headers []string) int {
 	v, n := vocabularyOf[s.Kind()](), 0
 	declared := map[string]manifests.Quantity{}
-	for text, q := range s.Columns {
-		declared[words(text)] = q
+	for _, text := range slices.Sorted(maps.Keys(s.Columns)) {
+		declared[words(text)] = s.Columns[text]
 	}
 	for _, h := range headers {
 		q, ok := declared[words(h)]

@@ -58,7 +58,7 @@ func Run(path string, opt Options) (*Result, error) {
 	case opt.Replace:
 		policy = folder.Replace
 	}
-	if err := apart(out, path, m); err != nil {
+	if err := folder.Apart(out, inputs(path, m)); err != nil {
 		return nil, err
 	}
 	f, err := folder.Open(out, policy)
@@ -77,49 +77,17 @@ func Run(path string, opt Options) (*Result, error) {
 	return r, nil
 }
 
-// apart refuses a result folder that holds the manifest or a source: replacing
-// it would delete what the run is reading.
-func apart(out, path string, m *manifests.Manifest) error {
-	target, err := resolved(out)
-	if err != nil {
-		return err
-	}
+// inputs are the paths of what a run reads: its manifest and its sources.
+func inputs(path string, m *manifests.Manifest) []string {
 	dir := path
 	if info, err := os.Stat(path); err == nil && !info.IsDir() {
 		dir = filepath.Dir(path)
 	}
-	if dir, err = resolved(dir); err != nil {
-		return err
-	}
-	inputs := []string{filepath.Join(dir, manifests.FileName)}
+	out := []string{filepath.Join(dir, manifests.FileName)}
 	for i := range m.Sources {
-		inputs = append(inputs, filepath.Join(dir, filepath.FromSlash(m.Sources[i].File)))
+		out = append(out, filepath.Join(dir, filepath.FromSlash(m.Sources[i].File)))
 	}
-	for _, input := range inputs {
-		if rel, err := filepath.Rel(target, input); err == nil && filepath.IsLocal(rel) {
-			return fmt.Errorf("the result folder %s holds %s, which this run reads; name another folder with --out",
-				problem.CleanAll(out), problem.CleanAll(filepath.ToSlash(rel)))
-		}
-	}
-	return nil
-}
-
-// resolved is the absolute path with links followed as far as it exists.
-func resolved(path string) (string, error) {
-	abs, err := filepath.Abs(path)
-	if err != nil {
-		return "", err
-	}
-	rest := ""
-	for at := abs; ; at = filepath.Dir(at) {
-		if real, err := filepath.EvalSymlinks(at); err == nil {
-			return filepath.Join(real, rest), nil
-		}
-		if filepath.Dir(at) == at {
-			return abs, nil
-		}
-		rest = filepath.Join(filepath.Base(at), rest)
-	}
+	return out
 }
 
 // runInto works the stages in order into an empty folder.
