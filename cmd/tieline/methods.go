@@ -123,7 +123,7 @@ func printMethod(w io.Writer, m *method.Method) {
 	line("closes", d.Closes)
 	var spans []string
 	for _, b := range d.Range {
-		spans = append(spans, fmt.Sprintf("%s %g to %g %s", b.Name, b.Min, b.Max, b.Unit))
+		spans = append(spans, strings.TrimSuffix(fmt.Sprintf("%s %g to %g %s", b.Name, b.Min, b.Max, b.Unit), " 1"))
 	}
 	line("range", strings.Join(spans, "; ")+" ("+d.RangeSource+")")
 	line("made for", d.Setting)

@@ -72,7 +72,7 @@ type Constant struct {
 // Text is the trace as people read it.
 func (t *Trace) Text() string {
 	var b strings.Builder
-	fmt.Fprintf(&b, "%s\n", problem.Clean(t.EstimateID))
+	fmt.Fprintf(&b, "%s\n", problem.CleanAll(t.EstimateID))
 	for _, a := range t.Analyses {
 		fmt.Fprintf(&b, "\n%s (%s): %s line %d, lineage %s\n", problem.Clean(a.ID), a.Phase, problem.Clean(a.File), a.Line, a.Lineage)
 		if a.PartOf != "" {
@@ -83,7 +83,7 @@ func (t *Trace) Text() string {
 		}
 	}
 	if t.Pair != "" {
-		fmt.Fprintf(&b, "\nPair %s\n", problem.Clean(t.Pair))
+		fmt.Fprintf(&b, "\nPair %s\n", problem.CleanAll(t.Pair))
 	}
 	fmt.Fprintf(&b, "\nMethod %s %s\n", t.Method, t.Component)
 	wrap(&b, "  ", "    ", t.Equation)
@@ -116,7 +116,10 @@ func (t *Trace) numbers(b *strings.Builder) {
 	for _, q := range t.Quantities {
 		value := "none: " + q.Why
 		if q.Value != nil {
-			value = digits(*q.Value) + " " + q.Unit
+			value = digits(*q.Value)
+			if q.Unit != "1" {
+				value += " " + q.Unit
+			}
 		}
 		fmt.Fprintf(b, "  %-36s %s\n", q.Name, value)
 	}
