@@ -453,10 +453,7 @@ func (e *evaluator) emit(r *result, i, lane int, est *estimate) {
 		if est.status != "" {
 			row.Status, row.BoundC = est.status, &est.bound
 			findings := qc.OfBound(e.s.qcEstimate(e.k, it, l, est, p))
-			_, reasons := qc.Judge(findings)
-			if reasons != "" {
-				row.Reason += "; " + reasons
-			}
+			_, row.Reason = qc.Judge(findings)
 			r.findings = append(r.findings, e.s.findingRows("estimate", row.EstimateID, it.a, findings)...)
 		}
 		row.Verdict = qc.SetAsideRow.String()

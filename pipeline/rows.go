@@ -53,7 +53,7 @@ func variantName(v string) string {
 func (s *state) qcEstimate(k *kind, it item, l *discrepancy.Lane, est *estimate, p pressure) *qc.Estimate {
 	b, _ := s.all.At(int(it.a))
 	e := &qc.Estimate{
-		C: est.c, NoPressure: !p.given() && est.dTdP != 0,
+		C: est.c, Side: est.status, Bound: est.bound, NoPressure: !p.given() && est.dTdP != 0,
 		Info: l.Info, Component: l.Component, OutOf: est.outOf, OutOfValue: est.outOfValue,
 		Assumed: p.source == pFromManifest || p.source == pFromLine, PKbar: p.kbar, Setting: s.settings[b.Source], Beside: true,
 	}

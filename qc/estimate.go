@@ -13,6 +13,8 @@ type Estimate struct {
 	Info      *method.Info
 	Component string
 	C         float64         // the temperature, degC
+	Side      string          // "at most" or "at least" where there is only a bound, else ""
+	Bound     float64         // degC
 	OutOf     []*method.Bound // the bounds it is outside of
 	// OutOfValue holds the variable's value for each of OutOf, in the bound's unit.
 	OutOfValue []float64
@@ -85,11 +87,16 @@ const Assemblage = "assemblage"
 
 // OfBound applies the rules that also hold for a bound.
 func OfBound(e *Estimate) []Finding {
-	if !e.Assumed {
-		return nil
+	var out []Finding
+	if e.Side != "" {
+		out = append(out, Finding{Rule: "below detection", Effect: SetAside, Value: number(e.Bound), Limit: "a measured amount",
+			Detail: fmt.Sprintf("a component is below detection where the method takes its logarithm: %s %s degC", e.Side, text(e.Bound, 0))})
 	}
-	return []Finding{{Rule: "assumed pressure", Effect: Flagged, Value: number(e.PKbar), Limit: "stated by the source",
-		Detail: "assumed pressure: " + text(e.PKbar, 3) + " kbar is the manifest's, not the source's"}}
+	if !e.Assumed {
+		return out
+	}
+	return append(out, Finding{Rule: "assumed pressure", Effect: Flagged, Value: number(e.PKbar), Limit: "stated by the source",
+		Detail: "assumed pressure: " + text(e.PKbar, 3) + " kbar is the manifest's, not the source's"})
 }
 
 // coherency flags the strain-free solvus on lamellae whose coherency nobody

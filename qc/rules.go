@@ -56,6 +56,7 @@ var Rules = []Rule{
 	{"no temperature of a rock", "estimate", "the temperature itself", nil, "200 to 1800 degC", practice},
 	{"outside calibrated range", "estimate", "temperature, pressure and composition against the method's range", nil, "the method's", "the method"},
 	{"no pressure", "estimate", "a number worked at 1 bar, since it hardly depends on pressure", nil, "stated by the source", practice},
+	{"below detection", "estimate", "a bound in place of a number", nil, "a measured amount", practice},
 	{"assumed pressure", "estimate", "pressure from the manifest's default", nil, "stated by the source", practice},
 	{"setting", "estimate", "the source's rocks against the method's", nil, "the method's", "the method"},
 	{"coherency unknown", "estimate", "a strain-free solvus on lamellae", nil, "incoherent lamellae", practice},

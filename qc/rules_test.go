@@ -181,6 +181,7 @@ var ruleCases = []ruleCase{
 	{"no temperature of a rock", SetAside, estimate(Estimate{C: 199.9}), estimate(Estimate{C: 200})},
 	{"outside calibrated range", Flagged, estimate(Estimate{OutOf: []*method.Bound{{Name: "T", Unit: "degC", Min: 900, Max: 1400}}, OutOfValue: []float64{899}}), estimate(Estimate{})},
 	{"no pressure", Flagged, estimate(Estimate{NoPressure: true}), estimate(Estimate{})},
+	{"below detection", SetAside, estimate(Estimate{Side: "at most", Bound: 788}), estimate(Estimate{})},
 	{"assumed pressure", Flagged, estimate(Estimate{Assumed: true, PKbar: 8}), estimate(Estimate{PKbar: 8})},
 	{"setting", Flagged, estimate(Estimate{Info: mantleOnly, Setting: "granulite"}), estimate(Estimate{Info: mantleOnly, Setting: "Mantle peridotite"})},
 	{"coherency unknown", Flagged, estimate(Estimate{Info: &method.Info{ID: "alkali-feldspar-solvus/x"}}), estimate(Estimate{Info: &method.Info{ID: "alkali-feldspar-solvus/x-coherent"}})},
