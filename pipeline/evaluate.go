@@ -147,6 +147,7 @@ type evaluator struct {
 	sides [2]side
 	p     []pressure
 	from  int // the block's first item
+	base  []chem.Bar
 
 	alone *method.Block // one row, for bounds
 }
@@ -287,14 +288,18 @@ func (e *evaluator) method(m *method.Method, n int) [][]estimate {
 	return out
 }
 
-// around evaluates m at the block's pressures and either side of them.
+// around evaluates m at the block's pressures and either side of them, and puts
+// the pressures back to the bit: taking steps off again would leave rounding
+// behind for the methods that follow.
 func (e *evaluator) around(m *method.Method) {
-	m.Evaluate(e.block, e.at[0])
-	e.shift(-pressureStep)
-	m.Evaluate(e.block, e.at[1])
-	e.shift(2 * pressureStep)
-	m.Evaluate(e.block, e.at[2])
-	e.shift(-pressureStep)
+	e.base = append(e.base[:0], e.block.P...)
+	for i, step := range []chem.Bar{0, -pressureStep, pressureStep} {
+		for j, p := range e.base {
+			e.block.P[j] = p + step
+		}
+		m.Evaluate(e.block, e.at[i])
+	}
+	copy(e.block.P, e.base)
 }
 
 // lineRounds and lineTolerance end the search for the pressure on a line. Most
@@ -346,15 +351,12 @@ func (e *evaluator) followLine(m *method.Method, c int) {
 // lineStartC is where the search starts, degC.
 const lineStartC = 800
 
-func (e *evaluator) shift(by chem.Bar) {
-	for i := range e.block.P {
-		e.block.P[i] += by
-	}
-}
-
 func (e *evaluator) estimate(m *method.Method, c, i int) estimate {
 	at, below, above := &e.at[0][c], &e.at[1][c], &e.at[2][c]
-	est := estimate{why: at.Why[i], c: float64(at.T[i].Celsius()), kbar: float64(e.block.P[i].Kbar())}
+	est := estimate{why: at.Why[i], c: float64(at.T[i].Celsius()), kbar: e.p[i].kbar}
+	if e.p[i].source == pFromLine {
+		est.kbar = float64(e.block.P[i].Kbar())
+	}
 	if est.why == method.OK && (math.IsNaN(est.c) || math.IsInf(est.c, 0)) {
 		est.why = method.NotFinite
 	}

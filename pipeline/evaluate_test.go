@@ -158,6 +158,22 @@ func TestPressure(t *testing.T) {
 	}
 }
 
+// A pressure that is no round number of bars stays what the source printed, and
+// a method's temperature does not hang on which others are worked out.
+func TestPressureKeepsItsBits(t *testing.T) {
+	const kbar = 1.2345678901234567
+	csv := strings.NewReplacer(",An\n", ",An,P (kbar)\n", ".009\n", ".009,1.2345678901234567\n", ".215\n", ".215,\n").Replace(feldspars)
+	all := compile(t, "composition = \"end-member fraction\"\n", csv)
+	one := compile(t, "composition = \"end-member fraction\"\n[methods]\nuse = [\"two-feldspar/putirka-2008-27b\"]\n", csv)
+	a, b := estimateOf(t, all, "a", "two-feldspar/putirka-2008-27b", ""), estimateOf(t, one, "a", "two-feldspar/putirka-2008-27b", "")
+	if *a.PKbar != kbar || *b.PKbar != kbar {
+		t.Errorf("p_kbar %v and %v; the source printed %v", *a.PKbar, *b.PKbar, kbar)
+	}
+	if *a.TC != *b.TC || *a.DTDP != *b.DTDP || a.Lineage != b.Lineage {
+		t.Errorf("27b among all methods gives %v, dT/dP %v, %s; alone %v, %v, %s", *a.TC, *a.DTDP, a.Lineage, *b.TC, *b.DTDP, b.Lineage)
+	}
+}
+
 // What is below detection where a logarithm is taken gives a bound: the
 // temperature at the limit, never at half of it.
 func TestBelowDetectionGivesABound(t *testing.T) {
