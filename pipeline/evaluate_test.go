@@ -161,8 +161,8 @@ func TestPressure(t *testing.T) {
 // A pressure that is no round number of bars stays what the source printed, and
 // a method's temperature does not hang on which others are worked out.
 func TestPressureKeepsItsBits(t *testing.T) {
-	const kbar = 1.2345678901234567
-	csv := strings.NewReplacer(",An\n", ",An,P (kbar)\n", ".009\n", ".009,1.2345678901234567\n", ".215\n", ".215,\n").Replace(feldspars)
+	const kbar = 0.0012345678901234567
+	csv := strings.NewReplacer(",An\n", ",An,P (kbar)\n", ".009\n", ".009,0.0012345678901234567\n", ".215\n", ".215,\n").Replace(feldspars)
 	all := compile(t, "composition = \"end-member fraction\"\n", csv)
 	one := compile(t, "composition = \"end-member fraction\"\n[methods]\nuse = [\"two-feldspar/putirka-2008-27b\"]\n", csv)
 	a, b := estimateOf(t, all, "a", "two-feldspar/putirka-2008-27b", ""), estimateOf(t, one, "a", "two-feldspar/putirka-2008-27b", "")
